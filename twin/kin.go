@@ -3,18 +3,17 @@ package twin
 // Kin says who is related to whom, by index of a person. It is all that the
 // variance models need to know of a pedigree; *Pedigree is the usual one.
 //
-// Every method is symmetric in its two people, except Relation where a
-// relation has a direction (parent and child). Answers about two people of
+// Every method is symmetric in its two people. Answers about two people of
 // different families are never asked for.
 type Kin interface {
 	// Family is the label of the family of person i. People with different
 	// labels are independent.
 	Family(i int) int
 
-	// Kinship is twice the kinship coefficient of persons i and j: the
-	// expected share of their genes they have by common descent, 1 for
-	// identical twins, 0.5 for full siblings and for parent and child, 0.25 for
-	// half-siblings. Kinship(i, i) is 1 plus the inbreeding coefficient of i.
+	// Kinship is twice the kinship coefficient of persons i and j, their
+	// expected share of genes in common by descent: 1 for identical twins, 0.5
+	// for full siblings and for parent and child, 0.25 for half-siblings.
+	// Kinship(i, i) is 1 plus the inbreeding coefficient of i.
 	Kinship(i, j int) float64
 
 	// SharedHome says whether persons i and j grew up in the same home. The
@@ -27,6 +26,6 @@ type Kin interface {
 	// full siblings, 0 where one side only is shared.
 	Dominance(i, j int) float64
 
-	// Relation names how person j stands to person i.
+	// Relation names how persons i and j belong together.
 	Relation(i, j int) Relation
 }
