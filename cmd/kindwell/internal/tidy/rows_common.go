@@ -23,7 +23,7 @@ type Interval struct {
 // Relation is a row of relations.csv.
 type Relation struct {
 	Relation    string `name:"relation" key:"primary" enum:"mz dz_same_sex dz_opposite_sex unknown_zygosity full_sibling half_sibling parent_child spouse other_kin" description:"Kind of relation of two people, read from the ids of parents and twins: mz are identical (monozygotic) twins, who share all genes; dz fraternal twins, who share half of them on average, as full siblings and parent and child do; half-siblings share a quarter."`
-	Pairs       int    `name:"pairs" unit:"pairs" description:"Number of pairs of people in the study with this relation; a person is in as many pairs as she has relatives of that kind."`
+	Pairs       int    `name:"pairs" unit:"pairs" description:"Number of pairs of people in the study with this relation; a person is in as many pairs as there are such relatives in the study."`
 	Families    int    `name:"families" unit:"families" description:"Number of families (connected sets of relatives, which are never split between training and testing) that hold at least one such pair."`
 	SharingHome int    `name:"sharing_home" unit:"pairs" description:"Number of these pairs that count as brought up in one home, so that the shared environment C makes them alike in the variance models."`
 }
