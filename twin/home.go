@@ -21,7 +21,7 @@ func (p *Pedigree) findHomes(r *reading) {
 	seen := make(map[string]int32)
 	stated := make([]int32, p.people)
 	for i := range stated {
-		stated[i], r.homes = dense(seen, r.homes, r.people[i].RearedIn)
+		stated[i], r.homes = numbered(seen, r.homes, r.people[i].RearedIn)
 	}
 	if len(r.homes) == 0 {
 		return

@@ -33,6 +33,8 @@ type Pedigree struct {
 	memberStart []int            // where each family starts in members
 }
 
+var _ Kin = (*Pedigree)(nil)
+
 type couple struct{ mother, father int32 }
 
 // none marks an unknown parent, a missing twin set, sibship or home.

@@ -21,7 +21,7 @@ type reading struct {
 	twins          [][]int32 // members of each twin set
 	zygosity       []Zygosity
 	identical      []int32 // lowest index of identical people, by person
-	label          []int32 // dense family label, none when empty
+	label          []int32 // number of the family label, none when empty
 	labels         []string
 	homes          []string
 }
@@ -119,12 +119,12 @@ func (r *reading) readIDs() {
 	r.label = make([]int32, n)
 	seen := make(map[string]int32)
 	for i := range r.people {
-		r.label[i], r.labels = dense(seen, r.labels, r.people[i].Family)
+		r.label[i], r.labels = numbered(seen, r.labels, r.people[i].Family)
 	}
 }
 
-// dense numbers texts by first appearance, none for the empty one.
-func dense(seen map[string]int32, texts []string, text string) (int32, []string) {
+// numbered gives a text its number by first appearance, none for the empty one.
+func numbered(seen map[string]int32, texts []string, text string) (int32, []string) {
 	if text == "" {
 		return none, texts
 	}

@@ -12,7 +12,7 @@ func (r *reading) readTwinSets() {
 	for i := range r.people {
 		r.zygosity[i] = r.people[i].Zygosity
 		r.identical[i] = int32(i)
-		r.twinSet[i], labels = dense(seen, labels, r.people[i].TwinSet)
+		r.twinSet[i], labels = numbered(seen, labels, r.people[i].TwinSet)
 		if s := r.twinSet[i]; s != none {
 			if int(s) == len(r.twins) {
 				r.twins = append(r.twins, nil)
