@@ -5,15 +5,18 @@ import (
 	"unicode/utf8"
 )
 
-// Nearest returns the name that was probably meant: the one with the fewest
-// letters to insert, delete, replace or exchange with a neighbour, capitals
-// aside, the first of equals. It is empty when no name is within a third of the
-// letters.
-func Nearest(name string, names []string) string {
+// nearest returns the name that was probably meant: the one with the fewest
+// letters to insert, delete, replace or exchange with a neighbour, capitals and
+// the kind of gap between words aside, the first of equals. It is empty when no
+// name is within a third of the letters.
+func nearest(name string, names []string) string {
 	best, bestDistance := "", 1+max(1, utf8.RuneCountInString(name)/3)
-	folded := []rune(strings.ToLower(name))
+	plain := func(s string) []rune {
+		return []rune(strings.NewReplacer(" ", "_", "-", "_", ".", "_").Replace(strings.ToLower(s)))
+	}
+	wanted := plain(name)
 	for _, candidate := range names {
-		if d := distance(folded, []rune(strings.ToLower(candidate)), bestDistance); d < bestDistance {
+		if d := distance(wanted, plain(candidate), bestDistance); d < bestDistance {
 			best, bestDistance = candidate, d
 		}
 	}
@@ -53,7 +56,7 @@ func distance(a, b []rune, limit int) int {
 // orNearest is the end of a message about a missing column: the likely name,
 // or else the names there are.
 func orNearest(name string, names []string) string {
-	if near := Nearest(name, names); near != "" {
+	if near := nearest(name, names); near != "" {
 		return "the nearest name is " + quote(near)
 	}
 	return "its columns are " + quoteList(names, 8)

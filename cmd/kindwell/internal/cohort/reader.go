@@ -10,20 +10,24 @@ import (
 	"unicode/utf8"
 )
 
-// grid is a table as text: the header's names and the cells row by row, each
-// row with the line of the file on which it starts.
+// grid is a table as read: for every column its cells as text or, where the
+// column has to hold numbers, as numbers; for every row the line of the file on
+// which it starts.
 type grid struct {
-	file   string
-	names  []string
-	header int      // line of the header
-	cells  []string // row-major, len(names) a row
-	lines  []int
-	inner  map[int][]int // lines of the cells of rows that go over several lines
+	file    string
+	names   []string
+	header  int // line of the header
+	columns []gridColumn
+	lines   []int
+	inner   map[int][]int // lines of the cells of rows that go over several lines
 }
 
-func (g *grid) rows() int { return len(g.lines) }
-
-func (g *grid) cell(row, column int) string { return g.cells[row*len(g.names)+column] }
+// gridColumn has the cells in one of two forms.
+type gridColumn struct {
+	role    Role
+	text    []string
+	numbers *numberColumn
+}
 
 // line is the line of the file on which a cell starts.
 func (g *grid) line(row, column int) int {
@@ -35,31 +39,23 @@ func (g *grid) line(row, column int) int {
 
 // readGrid splits a table into cells. Rows without any text are skipped, except
 // in a table of one column, where an empty line cannot be told from a lost one
-// and is refused.
-func readGrid(s *source, faults *collector) *grid {
+// and is refused. It is nil when faults made it stop.
+func readGrid(s *source, typing typing, faults *collector) *grid {
 	r := csv.NewReader(bytes.NewReader(s.text))
 	r.Comma = s.comma
 	r.FieldsPerRecord = -1
 	r.ReuseRecord = true
-	record, err := r.Read()
-	if err != nil {
-		faults.add(parseFault(s.file, err))
+	g, end := readHeader(r, s, faults)
+	if g == nil {
 		return nil
 	}
-	g := &grid{file: s.file}
-	g.header, _ = r.FieldPos(0)
-	if !g.readHeader(record, s, faults) {
-		return nil
+	if typing.check != nil {
+		typing.check(g, faults)
 	}
 	width := len(g.names)
-	if estimate := min(bytes.Count(s.text, []byte{'\n'}), len(s.text)/width+1); estimate > 0 {
-		g.cells = make([]string, 0, estimate*width)
-		g.lines = make([]int, 0, estimate)
-	}
-	end, _ := r.FieldPos(width - 1)
-	end += strings.Count(record[width-1], "\n")
+	g.prepare(typing, min(bytes.Count(s.text, []byte{'\n'}), len(s.text)/width+1))
 	for {
-		record, err = r.Read()
+		record, err := r.Read()
 		if err == io.EOF {
 			break
 		}
@@ -80,25 +76,22 @@ func readGrid(s *source, faults *collector) *grid {
 			faults.add(&Fault{File: s.file, Row: line, Message: raggedMessage(len(record), width, s.comma)})
 			continue
 		}
+		if end != line {
+			g.keepInner(r)
+		}
+		g.lines = append(g.lines, line)
 		for j, cell := range record {
 			if len(cell) > maxCell && utf8.RuneCountInString(cell) > maxCell {
-				row, _ := r.FieldPos(j)
-				faults.add(&Fault{File: s.file, Row: row, Column: g.names[j], Message: "a cell of more than 32,767 characters; is a quote opened here and closed much later?"})
+				faults.add(&Fault{File: s.file, Row: g.line(len(g.lines)-1, j), Column: g.names[j], Message: "a cell of more than 32,767 characters; is a quote opened here and closed much later?"})
 				return nil
 			}
-		}
-		if end != line {
-			if g.inner == nil {
-				g.inner = make(map[int][]int)
+			switch c := &g.columns[j]; {
+			case c.numbers != nil:
+				c.numbers.add(cell, typing.missing)
+			case c.role != Skip:
+				c.text = append(c.text, cell)
 			}
-			lines := make([]int, width)
-			for j := range lines {
-				lines[j], _ = r.FieldPos(j)
-			}
-			g.inner[len(g.lines)] = lines
 		}
-		g.cells = append(g.cells, record...)
-		g.lines = append(g.lines, line)
 	}
 	if len(g.lines) == 0 && faults.empty() {
 		faults.add(&Fault{File: s.file, Message: "has a header and no rows"})
@@ -106,21 +99,62 @@ func readGrid(s *source, faults *collector) *grid {
 	return g
 }
 
-// readHeader checks the names of the columns; false when the rest is not worth
-// reading.
-func (g *grid) readHeader(record []string, s *source, faults *collector) bool {
-	fault := func(format string, args ...any) bool {
+// prepare makes room for the cells.
+func (g *grid) prepare(typing typing, rows int) {
+	g.lines = make([]int, 0, rows)
+	g.columns = make([]gridColumn, len(g.names))
+	for j, name := range g.names {
+		c := &g.columns[j]
+		c.role = typing.role(name)
+		switch c.role {
+		case Skip:
+		case Number:
+			c.numbers = newNumberColumn(rows, typing.topCodes(name))
+		default:
+			c.text = make([]string, 0, rows)
+		}
+	}
+}
+
+// keepInner notes where the cells of the next row start, when a line break
+// inside a cell parts them.
+func (g *grid) keepInner(r *csv.Reader) {
+	if g.inner == nil {
+		g.inner = make(map[int][]int)
+	}
+	lines := make([]int, len(g.names))
+	for j := range lines {
+		lines[j], _ = r.FieldPos(j)
+	}
+	g.inner[len(g.lines)] = lines
+}
+
+// readHeader reads and checks the names of the columns and gives the line on
+// which the header ends; nil when the rest is not worth reading.
+func readHeader(r *csv.Reader, s *source, faults *collector) (*grid, int) {
+	record, err := r.Read()
+	if err != nil {
+		faults.add(parseFault(s.file, err))
+		return nil, 0
+	}
+	g := &grid{file: s.file}
+	g.header, _ = r.FieldPos(0)
+	end, _ := r.FieldPos(len(record) - 1)
+	end += strings.Count(record[len(record)-1], "\n")
+	refuse := func(format string, args ...any) {
 		faults.add(&Fault{File: s.file, Row: g.header, Message: fmt.Sprintf(format, args...)})
-		return false
 	}
 	if len(record) > maxColumns {
-		return fault("has %d columns; at most %d can be read", len(record), maxColumns)
+		refuse("has %d columns; at most %d can be read", len(record), maxColumns)
+		return nil, 0
 	}
 	if why := wrongDelimiter(record, s.comma); why != "" {
-		return fault("%s", why)
+		refuse("%s", why)
+		return nil, 0
 	}
 	if strings.HasPrefix(record[0], "#") && len(record) == 1 {
-		return fault("starts with a comment; the first line has to be the header, so delete what comes before it")
+		refuse("starts with a comment; the first line has to be the header, so delete what comes before it")
+		return nil, 0
 	}
 	g.names = make([]string, len(record))
 	first := make(map[string]int, len(record))
@@ -128,7 +162,7 @@ func (g *grid) readHeader(record []string, s *source, faults *collector) bool {
 		name = trimmed(name)
 		g.names[j] = name
 		if name == "" {
-			fault("column %d has no name%s", j+1, lastColumnHint(j, len(record)))
+			refuse("column %d has no name%s", j+1, lastColumnHint(j, len(record)))
 			continue
 		}
 		if before, seen := first[name]; seen {
@@ -137,7 +171,10 @@ func (g *grid) readHeader(record []string, s *source, faults *collector) bool {
 		}
 		first[name] = j
 	}
-	return faults.empty()
+	if !faults.empty() {
+		return nil, 0
+	}
+	return g, end
 }
 
 func lastColumnHint(j, width int) string {

@@ -199,7 +199,7 @@ func whyNot(err error, path string) string {
 				tables = append(tables, e.Name())
 			}
 		}
-		if near := Nearest(filepath.Base(path), tables); near != "" {
+		if near := nearest(filepath.Base(path), tables); near != "" {
 			return "there is no such file; the nearest name in its folder is " + quote(near)
 		}
 		return "there is no such file"

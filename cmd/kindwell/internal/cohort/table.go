@@ -1,8 +1,9 @@
 package cohort
 
 import (
+	"bytes"
+	"encoding/csv"
 	"fmt"
-	"math"
 
 	"github.com/go-gota/gota/dataframe"
 	"github.com/go-gota/gota/series"
@@ -37,11 +38,12 @@ type Table struct {
 	file    string
 	header  int
 	names   []string
-	numeric map[string]bool
+	column  map[string]int // place in the file
+	held    map[string]int // place in the frame
+	numeric []bool         // by place in the frame
 	frame   dataframe.DataFrame
 	lines   []int
 	inner   map[int][]int
-	column  map[string]int // place in the file
 }
 
 // TableOptions says how to read a table.
@@ -82,9 +84,11 @@ func ReadNames(folder, file string) ([]string, error) {
 		faults.add(fault)
 		return nil, faults.err()
 	}
-	g := readGrid(s, &faults)
-	if err := faults.err(); err != nil {
-		return nil, err
+	r := csv.NewReader(bytes.NewReader(s.text))
+	r.Comma = s.comma
+	g, _ := readHeader(r, s, &faults)
+	if g == nil {
+		return nil, faults.err()
 	}
 	return g.names, nil
 }
@@ -99,10 +103,10 @@ func (t *Table) Len() int { return len(t.lines) }
 func (t *Table) Names() []string { return t.names }
 
 // Has tells whether the table has a column that was not skipped.
-func (t *Table) Has(name string) bool { _, ok := t.numeric[name]; return ok }
+func (t *Table) Has(name string) bool { _, ok := t.held[name]; return ok }
 
-// Numeric tells whether a column holds numbers.
-func (t *Table) Numeric(name string) bool { return t.numeric[name] }
+// Numeric tells whether the table has a column of that name that holds numbers.
+func (t *Table) Numeric(name string) bool { at, ok := t.held[name]; return ok && t.numeric[at] }
 
 // Line is the line of the file on which a row starts, from 1.
 func (t *Table) Line(row int) int { return t.lines[row] }
@@ -114,7 +118,7 @@ func (t *Table) Frame() dataframe.DataFrame { return t.frame }
 // Numbers is a column of numbers, NaN where the cell is missing. It panics when
 // the column is not one.
 func (t *Table) Numbers(name string) []float64 {
-	if numeric, ok := t.numeric[name]; !ok || !numeric {
+	if !t.Numeric(name) {
 		panic(fmt.Sprintf("cohort: %q is no column of numbers", name))
 	}
 	return t.frame.Col(name).Float()
@@ -123,7 +127,7 @@ func (t *Table) Numbers(name string) []float64 {
 // Text is a column of ids or categories, "" where the cell is missing. It
 // panics when the column is not one.
 func (t *Table) Text(name string) []string {
-	if numeric, ok := t.numeric[name]; !ok || numeric {
+	if !t.Has(name) || t.Numeric(name) {
 		panic(fmt.Sprintf("cohort: %q is no column of text", name))
 	}
 	cells := t.frame.Col(name)
@@ -134,6 +138,14 @@ func (t *Table) Text(name string) []string {
 		}
 	}
 	return text
+}
+
+// cell is one cell of a column of text, "" where it is missing.
+func (t *Table) cell(row int, name string) string {
+	if e := t.frame.Elem(row, t.held[name]); !e.IsNA() {
+		return e.String()
+	}
+	return ""
 }
 
 // Fault is a fault with the address of a cell; without a column that of a row.
@@ -154,13 +166,18 @@ func (t *Table) headerFault(column, format string, args ...any) *Fault {
 type typing struct {
 	missing missingCells
 	role    func(name string) Role
-	// topCoded names the column in which 89+ counts as 89, with a warning.
-	topCoded string
+	// topCoded, if any, names the column in which 89+ counts as 89, with a
+	// warning.
+	topCoded func() string
+	// numberHint ends the fault of a column that holds no numbers at all.
+	numberHint string
 	// warn takes the warnings; nil when there can be none.
 	warn func(about, message string)
-	// check, if any, looks at the names before any cell is read as a number.
-	check func(file string, header int, names []string, faults *collector)
+	// check, if any, looks at the names of the columns before the cells.
+	check func(g *grid, faults *collector)
 }
+
+func (t typing) topCodes(name string) bool { return t.topCoded != nil && t.topCoded() == name }
 
 // readTable reads and types a table; it is nil when faults came of it.
 func readTable(folder, file string, faults *collector, typing typing) (*Table, InputFile) {
@@ -169,12 +186,9 @@ func readTable(folder, file string, faults *collector, typing typing) (*Table, I
 		faults.add(fault)
 		return nil, InputFile{}
 	}
-	g := readGrid(s, faults)
-	if g == nil || g.names == nil {
+	g := readGrid(s, typing, faults)
+	if g == nil {
 		return nil, s.input
-	}
-	if typing.check != nil {
-		typing.check(g.file, g.header, g.names, faults)
 	}
 	t := g.table(typing, faults)
 	if !faults.empty() {
@@ -183,37 +197,42 @@ func readTable(folder, file string, faults *collector, typing typing) (*Table, I
 	return t, s.input
 }
 
-// table gives the columns their types. The text of the cells is let go column
-// by column, so that only one of the two forms is held.
+// table gives the columns their types and hands them to a data frame. The cells
+// are let go column by column, so that only one of the two forms is held.
 func (g *grid) table(typing typing, faults *collector) *Table {
 	t := &Table{
 		file: g.file, header: g.header, names: g.names, lines: g.lines, inner: g.inner,
-		numeric: make(map[string]bool, len(g.names)),
-		column:  make(map[string]int, len(g.names)),
+		column: make(map[string]int, len(g.names)),
+		held:   make(map[string]int, len(g.names)),
 	}
 	var columns []series.Series
 	for j, name := range g.names {
 		t.column[name] = j
-		role := typing.role(name)
-		if role == Skip {
-			continue
+		c := &g.columns[j]
+		if c.role == Auto {
+			numbers := newNumberColumn(len(c.text), typing.topCodes(name))
+			for _, cell := range c.text {
+				numbers.add(cell, typing.missing)
+			}
+			if numbers.enough() {
+				c.numbers = numbers
+			}
 		}
 		var column series.Series
-		switch role {
-		case ID:
+		switch {
+		case c.role == Skip:
+			continue
+		case c.numbers != nil:
+			c.numbers.report(g, j, typing, faults)
+			column = series.New(c.numbers.values, series.Float, name)
+		case c.role == ID:
 			column = series.New(g.ids(j, typing.missing, faults), series.String, name)
-		case Category:
-			column = series.New(g.categories(j, typing.missing), series.String, name)
 		default:
-			numbers := g.numbers(j, typing)
-			if role == Auto && !numbers.enough() {
-				column = series.New(g.categories(j, typing.missing), series.String, name)
-				break
-			}
-			numbers.report(g, j, role, typing, faults)
-			column = series.New(numbers.values, series.Float, name)
+			column = series.New(categories(c.text, typing.missing), series.String, name)
 		}
-		t.numeric[name] = column.Type() == series.Float
+		g.columns[j] = gridColumn{}
+		t.held[name] = len(columns)
+		t.numeric = append(t.numeric, column.Type() == series.Float)
 		columns = append(columns, column)
 	}
 	if len(columns) > 0 {
@@ -226,133 +245,29 @@ func (g *grid) table(typing typing, faults *collector) *Table {
 // cell can be called so, for NaN is a missing cell.
 const missingText = "NaN"
 
+// ids keeps text to the letter.
 func (g *grid) ids(j int, missing missingCells, faults *collector) []string {
-	text := make([]string, g.rows())
-	for i := range text {
-		cell := g.cell(i, j)
+	text := g.columns[j].text
+	for i, cell := range text {
 		bare := trimmed(cell)
 		switch {
-		case missing.text(bare) && (bare == cell || bare == ""):
+		case bare == "", bare == cell && missing.text(cell):
 			text[i] = missingText
 		case bare != cell:
 			faults.add(&Fault{File: g.file, Row: g.line(i, j), Column: g.names[j], Value: cell,
 				Message: "an id with blanks or invisible characters at its ends; ids are matched to the letter, so take them off"})
-			text[i] = bare
-		default:
-			text[i] = cell
 		}
 	}
 	return text
 }
 
-func (g *grid) categories(j int, missing missingCells) []string {
-	text := make([]string, g.rows())
-	for i := range text {
-		cell := trimmed(g.cell(i, j))
+func categories(text []string, missing missingCells) []string {
+	for i, cell := range text {
+		cell = trimmed(cell)
 		if missing.text(cell) {
 			cell = missingText
 		}
 		text[i] = cell
 	}
 	return text
-}
-
-// numberColumn is a column read as numbers: the values and the rows of the
-// cells that are neither numbers nor missing.
-type numberColumn struct {
-	values []float64
-	bad    []int
-	top    []int // rows of cells like 89+
-	filled int   // cells that are not missing
-}
-
-func (g *grid) numbers(j int, typing typing) numberColumn {
-	c := numberColumn{values: make([]float64, g.rows())}
-	topColumn := typing.topCoded != "" && g.names[j] == typing.topCoded
-	for i := range c.values {
-		cell := trimmed(g.cell(i, j))
-		if typing.missing.text(cell) {
-			c.values[i] = math.NaN()
-			continue
-		}
-		v, why := parseNumber(cell)
-		if why != "" && topColumn {
-			if top, ok := topCoded(cell); ok {
-				v, why = top, ""
-				c.top = append(c.top, i)
-			}
-		}
-		switch {
-		case why != "":
-			c.bad = append(c.bad, i)
-			v = math.NaN()
-		case typing.missing.number(v):
-			c.values[i] = math.NaN()
-			continue
-		}
-		c.filled++
-		c.values[i] = v
-	}
-	return c
-}
-
-// enough tells whether an Auto column holds numbers.
-func (c numberColumn) enough() bool {
-	return float64(c.filled-len(c.bad)) >= autoShare*float64(c.filled)
-}
-
-// report turns the bad cells into faults: one by one, or in one when the column
-// seems to hold no numbers at all.
-func (c numberColumn) report(g *grid, j int, role Role, typing typing, faults *collector) {
-	address := func(i int, message string) *Fault {
-		return &Fault{File: g.file, Row: g.line(i, j), Column: g.names[j], Value: g.cell(i, j), Message: message}
-	}
-	if n := len(c.bad); n > 1 && 2*n > c.filled {
-		_, why := parseNumber(trimmed(g.cell(c.bad[0], j)))
-		faults.add(address(c.bad[0], fmt.Sprintf("%s; so with %d of the %d cells of this column, which has to hold numbers", why, n, c.filled)))
-		return
-	}
-	for _, i := range c.bad {
-		_, why := parseNumber(trimmed(g.cell(i, j)))
-		if role == Auto {
-			why += fmt.Sprintf("; %d of the %d cells of this column are numbers (if they are codes of categories, begin each with a letter)", c.filled-len(c.bad), c.filled)
-		}
-		faults.add(address(i, why))
-	}
-	if len(c.top) > 0 && typing.warn != nil {
-		typing.warn(g.names[j], fmt.Sprintf("%s: %s like %s (%s): taken as the number before the plus",
-			g.file, plural(len(c.top), "cell", "cells"), trimmed(g.cell(c.top[0], j)), rowList(g, c.top)))
-	}
-}
-
-// rowList names the first lines of some rows.
-func rowList(g *grid, rows []int) string {
-	lines := make([]int, 0, len(rows))
-	for _, i := range rows {
-		lines = append(lines, g.lines[i])
-	}
-	return lineList(lines)
-}
-
-// lineList prints up to ten lines: row 3; rows 3, 9 and 12; rows 1, 2 ... and 5 more.
-func lineList(lines []int) string {
-	const limit = 10
-	if len(lines) == 1 {
-		return fmt.Sprintf("row %d", lines[0])
-	}
-	list := "rows "
-	for k, line := range lines[:min(len(lines), limit)] {
-		switch {
-		case k == 0:
-		case k == len(lines)-1:
-			list += " and "
-		default:
-			list += ", "
-		}
-		list += fmt.Sprint(line)
-	}
-	if more := len(lines) - limit; more > 0 {
-		list += fmt.Sprintf(" and %d more", more)
-	}
-	return list
 }
