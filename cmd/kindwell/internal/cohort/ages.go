@@ -49,7 +49,7 @@ func (l *loader) checkParentAges(p *peopleTable, ages []float64) {
 			if !ok || old-young >= leastParentAge {
 				continue
 			}
-			what := fmt.Sprintf("the %s is only %s years older than the child", link.word, formatNumber(round(old-young)))
+			what := fmt.Sprintf("the %s is less than %d years older than the child", link.word, leastParentAge)
 			switch {
 			case old < young:
 				what = "the child is older than the " + link.word
@@ -102,6 +102,3 @@ func (l *loader) checkTwinAges(p *peopleTable, ages []float64) {
 			p.file, lineList(slight), plural(len(slight), "twin set", "twin sets")))
 	}
 }
-
-// round cuts the noise of a difference of decimal numbers.
-func round(x float64) float64 { return math.Round(x*1e6) / 1e6 }
