@@ -20,4 +20,6 @@
 //
 // The YAML that is read is plain: mappings, lists, text, numbers, true and
 // false. Anchors, aliases, tags, merge keys and second documents are refused.
+//
+//go:generate go test -run ^TestPages$ -update .
 package config

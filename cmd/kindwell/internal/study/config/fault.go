@@ -73,7 +73,7 @@ func (f Fault) Error() string {
 		fmt.Fprintf(&b, ":%d:%d", f.Line, f.Column)
 	}
 	b.WriteString(": " + f.Message)
-	if f.Line > 0 {
+	if f.Source != "" {
 		line, marker := excerpt(f.Source, f.Column)
 		number := fmt.Sprintf("%5d", f.Line)
 		fmt.Fprintf(&b, "\n%s | %s\n%s | %s", number, line, strings.Repeat(" ", len(number)), marker)

@@ -10,6 +10,7 @@ package config
 //	otherwise   the default in words, where it follows from other keys
 //	way         keys of one section with different ways exclude each other;
 //	            an asterisk (way:"file*") asks for one of the ways
+//	zero        what 0 means, where it is allowed below the minimum
 //	unit        of the number
 //	help        what the key means
 //	later       in the layout, not available in this version; the value is the
@@ -18,7 +19,7 @@ package config
 type Study struct {
 	Kindwell       int            `yaml:"kindwell" jsonschema:"required,enum=1" help:"layout of this file"`
 	Title          string         `yaml:"title" help:"heading of the report"`
-	Seed           uint64         `yaml:"seed" jsonschema:"required,maximum=9223372036854775807" help:"start of every random draw: the same seed gives the same results"`
+	Seed           uint64         `yaml:"seed" jsonschema:"required,minimum=0,maximum=9223372036854775807" help:"start of every random draw: the same seed gives the same results"`
 	MissingCodes   []string       `yaml:"missing_codes" jsonschema:"uniqueItems=true" help:"cells that mean missing in every table, as written there, besides an empty cell, NA, n/a and NaN"`
 	People         People         `yaml:"people" jsonschema:"required" help:"who is in the study and how they are related"`
 	Measures       *Measures      `yaml:"measures" help:"brain-state measures: the predictors"`
@@ -114,7 +115,7 @@ type Transform struct {
 	Match       []string `yaml:"match" jsonschema:"required,minItems=1,uniqueItems=true" help:"measure names, in which * stands for any characters"`
 	As          Scale    `yaml:"as" jsonschema:"required" help:"scale"`
 	Composition string   `yaml:"composition" help:"name of the whole whose parts are matched; needed for clr"`
-	Zeros       float64  `yaml:"zeros" jsonschema:"exclusiveMinimum=0,maximum=0.1" otherwise:"zeros are refused" help:"share that a part of zero is given before clr" unit:"share of the whole"` // 0: zeros are refused
+	Zeros       float64  `yaml:"zeros" jsonschema:"exclusiveMinimum=0,maximum=0.1" otherwise:"zeros are refused" help:"what a part of zero is given before clr" unit:"share of the whole"` // 0: zeros are refused
 }
 
 // Traits says where the outcomes are and which of them are used.
@@ -153,7 +154,7 @@ type Predict struct {
 	Inner            Inner       `yaml:"inner" help:"folds inside the training people, which choose the penalty"`
 	Penalties        Penalties   `yaml:"penalties" help:"penalties tried, spaced evenly in the logarithm"`
 	Metric           Metric      `yaml:"metric" otherwise:"r_by_fold, or r2 with outer.leave_out" help:"score that is tested"`
-	Permutations     int         `yaml:"permutations" jsonschema:"minimum=0,maximum=10000000,default=1000" help:"rearrangements of the traits behind each p; 0: no test, otherwise at least 19"`
+	Permutations     int         `yaml:"permutations" jsonschema:"minimum=19,maximum=10000000,default=1000" zero:"no test" help:"rearrangements of the traits behind each p" advice:"fewer than 19 cannot give a p of 0.05"`
 	Intervals        Intervals   `yaml:"intervals" jsonschema:"default=resampled" help:"intervals of scores"`
 	Compare          [][2]string `yaml:"compare" later:"[]" help:"pairs of sets: the second minus the first"`
 	NegativeControls bool        `yaml:"negative_controls" later:"false" help:"prediction of confounds and of a shuffled trait"`
@@ -165,7 +166,7 @@ type Predict struct {
 // Outer says who is held out: balanced folds of families, one family at a
 // time, or folds from a table. Exactly one of Folds, LeaveOut and File is set.
 type Outer struct {
-	Folds    int      `yaml:"folds" way:"folds" jsonschema:"minimum=2,default=10" help:"folds of whole families, balanced in people"`
+	Folds    int      `yaml:"folds" way:"folds" jsonschema:"minimum=2,maximum=1000000,default=10" help:"folds of whole families, balanced in people"`
 	Repeats  int      `yaml:"repeats" way:"folds" jsonschema:"minimum=1,maximum=10000,default=5" help:"partitions into such folds"`
 	LeaveOut LeaveOut `yaml:"leave_out" way:"leave_out" help:"holds out one at a time, in place of folds"`
 	File     string   `yaml:"file" way:"file" help:"table of given folds: repeat, fold, person, and people_group if there are several"`
@@ -175,7 +176,7 @@ type Outer struct {
 // Inner says how training people are split to choose the penalty. Exactly
 // one of Folds and File is set.
 type Inner struct {
-	Folds int    `yaml:"folds" way:"folds" jsonschema:"minimum=2,default=5" help:"folds of whole families, balanced in people"`
+	Folds int    `yaml:"folds" way:"folds" jsonschema:"minimum=2,maximum=1000000,default=5" help:"folds of whole families, balanced in people"`
 	File  string `yaml:"file" way:"file" help:"table of given folds: repeat, fold, inner_fold, person, and people_group if there are several"`
 }
 
@@ -191,8 +192,8 @@ type Penalties struct {
 type Heritability struct {
 	Of             []Role      `yaml:"of" jsonschema:"minItems=1,uniqueItems=true" otherwise:"measures and traits, as far as they are given" help:"variables that are fitted"`
 	Full           Model       `yaml:"full" jsonschema:"enum=ACE,enum=ADE,enum=AE,enum=CE,default=ACE" help:"model of the headline, chosen before the data are seen"`
-	Models         []Model     `yaml:"models" jsonschema:"minItems=1,uniqueItems=true" otherwise:"all" help:"models that are fitted; full is one of them"`
-	Covariates     []string    `yaml:"covariates" jsonschema:"uniqueItems=true" otherwise:"confounds.use" help:"columns of people fitted as fixed effects"`
+	Models         []Model     `yaml:"models" jsonschema:"minItems=1,uniqueItems=true" otherwise:"all of them" help:"models that are fitted; full is one of them"`
+	Covariates     []string    `yaml:"covariates" jsonschema:"uniqueItems=true" otherwise:"confounds.use" help:"columns of people fitted as fixed effects, with those squares and products of confounds that are made of them alone"`
 	Likelihood     Likelihood  `yaml:"likelihood" jsonschema:"default=ML" help:"likelihood that is maximised"`
 	Permutations   int         `yaml:"permutations" later:"0" help:"rearrangements of zygosity labels"`
 	Repeated       bool        `yaml:"repeated" later:"false" help:"split of E by sessions"`
