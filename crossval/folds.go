@@ -26,3 +26,29 @@ type Repeat struct {
 	// outside o. Sums over cells then serve every outer fold.
 	Cell []int
 }
+
+// People returns the number of people that the folds are about.
+func (f *Folds) People() int {
+	if len(f.Repeats) == 0 {
+		return 0
+	}
+	return len(f.Repeats[0].Outer)
+}
+
+// OuterFolds returns the number of outer folds over all repeats.
+func (f *Folds) OuterFolds() int {
+	sum := 0
+	for r := range f.Repeats {
+		sum += f.Repeats[r].OuterCount
+	}
+	return sum
+}
+
+// TestOverTrain returns the mean number of held-out people over the mean
+// number of training people, both over the outer folds of all repeats: the
+// ratio that ResampledT asks for.
+func (f *Folds) TestOverTrain() float64 {
+	test := f.People() * len(f.Repeats) // each person is held out once a repeat
+	train := f.People()*f.OuterFolds() - test
+	return float64(test) / float64(train)
+}
