@@ -5,8 +5,9 @@ import (
 	"strings"
 )
 
-// findFamilies makes the connected sets of people through parents, twin sets,
-// equal labels and stated homes, and numbers them by first appearance.
+// findFamilies makes the connected sets of people through parents, twin sets
+// (whose members share their parents, known or not), equal labels and stated
+// homes, and numbers them by first appearance.
 func (p *Pedigree) findFamilies(r *reading) {
 	everyone, n := len(p.mother), p.people
 	// One node a person, a label and a stated home.
@@ -21,9 +22,6 @@ func (p *Pedigree) findFamilies(r *reading) {
 			if parent != none {
 				joined.join(i, parent)
 			}
-		}
-		if s := p.twinSet[i]; s != none {
-			joined.join(i, r.twins[s][0])
 		}
 		if l := r.label[i]; l != none {
 			joined.join(i, labelNode+l)

@@ -199,6 +199,13 @@ func TestWhatIDsLeaveOpen(t *testing.T) {
 			[]Person{{ID: "a", Family: "F", Mother: "m", Father: "f"}, {ID: "b", Family: "F", Mother: "m", Father: "f"},
 				{ID: "c", Family: "F"}},
 			[]pair{{"a", "b", FullSibling}, {"a", "c", Unrelated}}, []string{"unknown_parents"}},
+		{"one of known mother and one without", full,
+			[]Person{{ID: "a", Family: "F", Mother: "m"}, {ID: "b", Family: "F"}},
+			[]pair{{"a", "b", Unrelated}}, []string{"unknown_parents"}},
+		{"one of known mother and twins without", full,
+			[]Person{{ID: "a", Family: "F", Mother: "m"}, {ID: "b", Family: "F", TwinSet: "T", Zygosity: Monozygotic},
+				{ID: "c", Family: "F", TwinSet: "T", Zygosity: Monozygotic}},
+			[]pair{{"a", "b", Unrelated}, {"b", "c", MZ}}, []string{"unknown_parents"}},
 		{"mother in common, father unknown", full,
 			[]Person{{ID: "a", Family: "F", Mother: "m"}, {ID: "b", Family: "F", Mother: "m"}},
 			[]pair{{"a", "b", FullSibling}}, []string{"unknown_parent"}},
@@ -312,9 +319,10 @@ func TestFamilies(t *testing.T) {
 		{ID: "e", Mother: "outside"},
 		{ID: "f", Mother: "outside"},
 		{ID: "g", Family: "x"},
+		{ID: "x_"},
 	}
 	p, notes := pedigree(t, people, Rules{})
-	for i, want := range []int{0, 1, 0, 0, 0, 2, 2, 3} {
+	for i, want := range []int{0, 1, 0, 0, 0, 2, 2, 3, 4} {
 		if f := p.Family(i); f != want {
 			t.Errorf("family of %s is %d, want %d", people[i].ID, f, want)
 		}
@@ -323,7 +331,7 @@ func TestFamilies(t *testing.T) {
 		t.Errorf("family of the founder is %d, want 2", f)
 	}
 	// The id of x is a label of others, so that the family of x needs another.
-	for f, want := range []string{"F", "x_", "e", "x"} {
+	for f, want := range []string{"F", "x_", "e", "x", "x__"} {
 		if label := p.FamilyLabel(f); label != want {
 			t.Errorf("label of family %d is %q, want %q", f, label, want)
 		}

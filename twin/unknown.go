@@ -199,8 +199,8 @@ func (r *reading) fillBothUnknown() {
 
 // withoutParents returns the people without parent ids who are not a parent
 // under their own label, and joins those of equal labels and of one twin set.
-// Twins of somebody who is such a parent are left out with them, but still
-// receive their unknown parents here.
+// The twins of such a parent are left out too: the set receives its unknown
+// parents here.
 func (r *reading) withoutParents() (open []int32, joined unions) {
 	isParent := make([]bool, len(r.people))
 	for i := range r.people {
@@ -214,13 +214,8 @@ func (r *reading) withoutParents() (open []int32, joined unions) {
 		}
 	}
 	for _, set := range r.twins {
-		if slices.ContainsFunc(set, func(i int32) bool { return isParent[i] }) {
-			for _, i := range set {
-				isParent[i] = true
-			}
-			if r.mother[set[0]] == none && r.father[set[0]] == none {
-				r.shareUnknownParents(set)
-			}
+		if r.mother[set[0]] == none && r.father[set[0]] == none && slices.ContainsFunc(set, func(i int32) bool { return isParent[i] }) {
+			r.shareUnknownParents(set)
 		}
 	}
 
