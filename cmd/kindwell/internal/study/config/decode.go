@@ -14,6 +14,7 @@ type decoder struct {
 	faults     Faults
 	bad        map[string]bool // paths whose value was refused
 	everything bool            // take keys and words of later versions too
+	homes      homes           // made when the first unknown key is met
 }
 
 func (d *decoder) fault(at place, message, advice string) {
@@ -53,7 +54,9 @@ func (d *decoder) section(n *node, into reflect.Value, path string) {
 		case ok && !f.served() && !d.everything:
 			d.notServed(key, f, at)
 		case ok:
-			d.setDefault(f, value, way)
+			if key.value.kind != isSection { // a value that is refused leaves the default
+				d.setDefault(f, value, way)
+			}
 			d.src.places[at] = key.place
 			d.value(key.value, value, f, at)
 		case f.required && n != nil:
@@ -107,7 +110,10 @@ func (d *decoder) unknown(key *entry, fields []field, path string) {
 		where = "in `" + path + "`"
 	}
 	message := fmt.Sprintf("unknown key `%s` %s", name, where)
-	homes, later := homesOf(key.name, path)
+	if d.homes == nil {
+		d.homes = layoutHomes()
+	}
+	homes, later := d.homes.find(key.name, path)
 	switch {
 	case len(homes) > 0:
 		words := "in " + strings.Join(quoted(homes), " or ")
@@ -120,41 +126,6 @@ func (d *decoder) unknown(key *entry, fields []field, path string) {
 	default:
 		d.fault(key.place, message, suggest(key.name, names, "keys here: "))
 	}
-}
-
-// homesOf finds a key elsewhere in the layout: the sections that it belongs
-// in ("" is the top of the file), those inside the section of path if there
-// are any, and otherwise the path of a key of a later version.
-func homesOf(name, path string) (homes []string, later string) {
-	var visit func(t reflect.Type, at string, inLater bool)
-	visit = func(t reflect.Type, at string, inLater bool) {
-		for _, f := range fieldsOf(t) {
-			isLater := inLater || !f.served()
-			switch {
-			case f.name != name:
-			case isLater && later == "":
-				later = join(at, name)
-			case !isLater:
-				homes = append(homes, at)
-			}
-			inner := f.kind
-			if inner.Kind() == reflect.Slice {
-				inner = inner.Elem()
-			}
-			if s := sectionType(inner); s != nil {
-				visit(s, join(at, f.name), isLater)
-			}
-		}
-	}
-	visit(reflect.TypeFor[Study](), "", false)
-	inside := func(home string) bool { return strings.HasPrefix(home, path+".") }
-	if path != "" && slices.ContainsFunc(homes, inside) {
-		homes = slices.DeleteFunc(homes, func(home string) bool { return !inside(home) })
-	}
-	if len(homes) > 3 {
-		homes = nil
-	}
-	return homes, later
 }
 
 func notAvailable(what string) string {

@@ -46,11 +46,19 @@ func (f Faults) Err() error {
 	return sorted
 }
 
-// Error prints all faults, with an empty line between two of them.
+// maxPrinted is the number of faults that are printed; a file with more is no
+// study file.
+const maxPrinted = 200
+
+// Error prints the faults, with an empty line between two of them.
 func (f Faults) Error() string {
-	texts := make([]string, len(f))
+	var texts []string
 	for i := range f {
-		texts[i] = f[i].Error()
+		if i == maxPrinted {
+			texts = append(texts, fmt.Sprintf("and %d more", len(f)-i))
+			break
+		}
+		texts = append(texts, f[i].Error())
 	}
 	return strings.Join(texts, "\n\n")
 }

@@ -4,6 +4,7 @@ import (
 	"path/filepath"
 	"strings"
 	"unicode"
+	"unicode/utf8"
 
 	"golang.org/x/text/width"
 )
@@ -12,6 +13,7 @@ import (
 type source struct {
 	file   string
 	lines  []string
+	ends   []int            // column after the last character of each line
 	places map[string]place // by path: predict.outer.folds, traits.use[2]
 }
 
@@ -19,16 +21,20 @@ type source struct {
 type place struct{ line, column int }
 
 func newSource(file, text string) *source {
-	return &source{file: file, lines: strings.Split(text, "\n"), places: map[string]place{}}
+	s := &source{file: file, lines: strings.Split(text, "\n"), places: map[string]place{}}
+	s.ends = make([]int, len(s.lines))
+	for i, line := range s.lines {
+		s.ends[i] = utf8.RuneCountInString(line) + 1
+	}
+	return s
 }
 
 // position completes a place. Places outside the file, which a syntax fault
 // at its end may have, are moved to its nearest line.
 func (s *source) position(p place) Position {
 	p.line = min(max(p.line, 1), len(s.lines))
-	line := s.lines[p.line-1]
-	p.column = min(max(p.column, 1), len([]rune(line))+1)
-	return Position{File: s.file, Line: p.line, Column: p.column, Source: line}
+	p.column = min(max(p.column, 1), s.ends[p.line-1])
+	return Position{File: s.file, Line: p.line, Column: p.column, Source: s.lines[p.line-1]}
 }
 
 // At says where a key or a list element stands in the study file. Paths are

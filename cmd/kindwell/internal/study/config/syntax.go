@@ -17,8 +17,9 @@ import (
 // Limits that no study file comes near; they keep reading quick and its depth
 // small, whatever the file.
 const (
-	maxBytes = 256 << 10
+	maxBytes = 128 << 10
 	maxDepth = 24
+	maxSigns = 50 // refused signs that are reported
 )
 
 // read turns a study file into a tree. With faults the tree may be nil.
@@ -31,11 +32,11 @@ func read(file string, data []byte) (*source, *node, Faults) {
 		return src, nil, faults
 	}
 	tokens := lexer.Tokenize(text)
-	faults = refusedTokens(src, tokens)
-	if depth, at := deepest(tokens); depth > maxDepth {
+	if at, deep := tooDeep(tokens); deep {
 		faults.Add(src.position(at), "lists and sections are nested too deep", "a study file needs no more than a few levels")
 		return src, nil, faults
 	}
+	faults = refusedTokens(src, tokens)
 	parsed, err := parser.Parse(tokens, 0, parser.AllowDuplicateMapKey())
 	if err != nil {
 		if len(faults) == 0 {
@@ -56,7 +57,9 @@ func read(file string, data []byte) (*source, *node, Faults) {
 	case isSection:
 		return src, root, faults
 	case isNothing:
-		faults.Add(src.position(place{1, 1}), "the file is empty", "a study file begins with `kindwell: 1`")
+		if len(faults) == 0 {
+			faults.Add(src.position(place{1, 1}), "the file is empty", "a study file begins with `kindwell: 1`")
+		}
 	case isScalar, isList:
 		faults.Add(src.position(root.place), "a study file is made of keys and values, found "+root.found(),
 			"begin with `kindwell: 1`; a space follows every `:`")
@@ -106,34 +109,45 @@ func refusedTokens(src *source, tokens token.Tokens) Faults {
 	var faults Faults
 	started, ended := false, false
 	for _, t := range tokens {
-		at := src.position(placeOf(t))
 		if t.Type == token.CommentType {
 			continue
 		}
 		if ended && t.Type != token.DocumentEndType || started && t.Type == token.DocumentHeaderType {
-			faults.Add(at, "a second document begins here", "one file holds one study: remove this line and what follows, or begin a file of its own")
+			faults.Add(src.position(placeOf(t)), "a second document begins here",
+				"one file holds one study: remove this line and what follows, or begin a file of its own")
+			return faults
+		}
+		if len(faults) == maxSigns {
 			return faults
 		}
 		started = true
-		quote := "text that begins with `" + t.Value + "` needs quotes"
-		switch t.Type {
-		case token.DocumentEndType:
-			ended = true
-		case token.DirectiveType:
-			faults.Add(at, "lines and values that begin with `%` have no meaning in a study file", quote)
-		case token.AliasType:
-			faults.Add(at, "`*` has a meaning of its own in YAML when text begins with it", "write it in quotes: "+strconv.Quote(wordAt(at)))
-		case token.AnchorType:
-			faults.Add(at, "anchors (`&`) are not used in a study file", quote)
-		case token.TagType:
-			faults.Add(at, "tags (`!`) are not used in a study file", "write the value without a tag; text that begins with `!` needs quotes")
-		case token.MergeKeyType:
-			faults.Add(at, "`<<` is not used in a study file", "write the keys out")
-		case token.MappingKeyType:
-			faults.Add(at, "`?` has a meaning of its own in YAML when text begins with it", "write the key as `name: value`, or the text in quotes")
+		ended = ended || t.Type == token.DocumentEndType
+		if message, advice := refusedToken(src, t); message != "" {
+			faults.Add(src.position(placeOf(t)), message, advice)
 		}
 	}
 	return faults
+}
+
+// refusedToken words what is wrong with a kind of token, if anything.
+func refusedToken(src *source, t *token.Token) (message, advice string) {
+	quote := "text that begins with `" + t.Value + "` needs quotes"
+	switch t.Type {
+	case token.DirectiveType:
+		return "lines and values that begin with `%` have no meaning in a study file", quote
+	case token.AliasType:
+		return "`*` has a meaning of its own in YAML when text begins with it",
+			"write it in quotes: " + strconv.Quote(wordAt(src.position(placeOf(t))))
+	case token.AnchorType:
+		return "anchors (`&`) are not used in a study file", quote
+	case token.TagType:
+		return "tags (`!`) are not used in a study file", "write the value without a tag; text that begins with `!` needs quotes"
+	case token.MergeKeyType:
+		return "`<<` is not used in a study file", "write the keys out"
+	case token.MappingKeyType:
+		return "`?` has a meaning of its own in YAML when text begins with it", "write the key as `name: value`, or the text in quotes"
+	}
+	return "", ""
 }
 
 // wordAt returns the text from a place to the next end of a value.
@@ -142,15 +156,15 @@ func wordAt(at Position) string {
 	if end := strings.IndexAny(text, ",]} \t"); end >= 0 {
 		text = text[:end]
 	}
-	return text
+	return shorten(text)
 }
 
-// deepest returns the largest number of lists and sections that are open at
-// once, at most twice too high, and where it is reached.
-func deepest(tokens token.Tokens) (int, place) {
+// tooDeep finds where more than maxDepth lists and sections are open at once,
+// in a count that is at most twice too high.
+func tooDeep(tokens token.Tokens) (place, bool) {
 	var columns []int // where the open block lists and sections begin
-	open, most := 0, 0
-	var where, last place
+	open := 0
+	var last place
 	for _, t := range tokens {
 		p := placeOf(t)
 		begins := 0 // column at which a block list or section begins or goes on
@@ -173,11 +187,11 @@ func deepest(tokens token.Tokens) (int, place) {
 				columns = append(columns, begins)
 			}
 		}
-		if depth := open + 2*len(columns); depth > most {
-			most, where = depth, p
+		if open+2*len(columns) > maxDepth {
+			return p, true
 		}
 	}
-	return most, where
+	return place{}, false
 }
 
 // syntaxFault words an error of the parser.
