@@ -1,0 +1,169 @@
+package dense
+
+import "gonum.org/v1/gonum/blas"
+
+// operand is a matrix as a factor of a product, transposed or not.
+type operand struct {
+	data       []float64
+	stride     int
+	transposed bool
+}
+
+// from returns the operand without its first rows and columns.
+func (o operand) from(row, column int) operand {
+	if o.transposed {
+		row, column = column, row
+	}
+	o.data = o.data[row*o.stride+column:]
+	return o
+}
+
+// flipped returns the operand transposed.
+func (o operand) flipped() operand {
+	o.transposed = !o.transposed
+	return o
+}
+
+// matrix is a matrix that is written to.
+type matrix struct {
+	rows, columns int
+	data          []float64
+	stride        int
+}
+
+// block is a rectangle of a matrix.
+type block struct{ row, column, rows, columns int }
+
+// part returns a block of the matrix.
+func (x matrix) part(b block) matrix {
+	return matrix{b.rows, b.columns, x.data[b.row*x.stride+b.column:], x.stride}
+}
+
+// row returns the numbers of one row.
+func (x matrix) row(i int) []float64 { return x.data[i*x.stride : i*x.stride+x.columns] }
+
+// scale multiplies the matrix by a number; 0 overwrites whatever is there.
+func (x matrix) scale(by float64) {
+	if by == 1 {
+		return
+	}
+	for i := range x.rows {
+		row := x.row(i)
+		if by == 0 {
+			clear(row)
+			continue
+		}
+		for j := range row {
+			row[j] *= by
+		}
+	}
+}
+
+// product is C = alpha*A*B + beta*C with sums of k terms.
+type product struct {
+	alpha float64
+	a, b  operand
+	k     int
+	beta  float64
+	c     matrix
+}
+
+// part returns the product that computes one block of C.
+func (p product) part(b block) product {
+	p.a, p.b, p.c = p.a.from(b.row, 0), p.b.from(0, b.column), p.c.part(b)
+	return p
+}
+
+// Dgemm computes
+//
+//	C = alpha * op(A) * op(B) + beta * C
+//
+// with arguments and panics as in gonum, and sums as in the package comment.
+func (im implementation) Dgemm(tA, tB blas.Transpose, m, n, k int, alpha float64, a []float64, lda int, b []float64, ldb int, beta float64, c []float64, ldc int) {
+	checkTranspose(tA)
+	checkTranspose(tB)
+	checkCount("m", m)
+	checkCount("n", n)
+	checkCount("k", k)
+	aRows, aColumns := stored(tA, m, k)
+	bRows, bColumns := stored(tB, k, n)
+	checkStride("A", lda, aColumns)
+	checkStride("B", ldb, bColumns)
+	checkStride("C", ldc, n)
+	if m == 0 || n == 0 {
+		return
+	}
+	checkLength("a", a, aRows, aColumns, lda)
+	checkLength("b", b, bRows, bColumns, ldb)
+	checkLength("c", c, m, n, ldc)
+
+	to := matrix{m, n, c, ldc}
+	if alpha == 0 || k == 0 {
+		to.scale(beta)
+		return
+	}
+	p := product{
+		alpha: alpha, a: operand{a, lda, tA != blas.NoTrans}, b: operand{b, ldb, tB != blas.NoTrans},
+		k: k, beta: beta, c: to,
+	}
+	threads := im.workers(m * n * k)
+	if threads == 1 {
+		withScratch(func(s *scratch) { p.compute(im.kernel, s) })
+		return
+	}
+	parts := cut(block{0, 0, m, n}, threads, im.kernel)
+	share(len(parts), threads, func(s *scratch, i int) { p.part(parts[i]).compute(im.kernel, s) })
+}
+
+// compute computes the product on the calling goroutine.
+func (p product) compute(kn *kernel, s *scratch) {
+	p.c.scale(p.beta)
+	m, n := p.c.rows, p.c.columns
+	rowsAtOnce := roundUp(min(m, blockRows), kn.height())
+	inPlace := !p.b.transposed && m <= inPlaceRows
+	for j := 0; j < n; j += blockColumns {
+		columns := min(blockColumns, n-j)
+		for l := 0; l < p.k; l += blockDepth {
+			depth := min(blockDepth, p.k-l)
+			right := s.packColumns(p.b.from(l, j), depth, columns, kn.width, inPlace)
+			for i := 0; i < m; i += rowsAtOnce {
+				rows := min(rowsAtOnce, m-i)
+				left := s.packRows(p.a.from(i, l), depth, rows, kn.height(), p.alpha)
+				kn.addTiles(p.c.part(block{i, j, rows, columns}), left, right, s)
+			}
+		}
+	}
+}
+
+// addTiles adds the product of packed rows and columns to C, strip by strip:
+// a strip of columns stays in the first cache for all rows.
+func (kn *kernel) addTiles(c matrix, left panels, right strips, s *scratch) {
+	for strip := range right.count() {
+		b, bStride := right.at(strip)
+		column := strip * kn.width
+		width := min(kn.width, c.columns-column)
+		row := 0
+		for panel := range left.count {
+			height := left.height(panel)
+			a := &left.data[row*left.depth]
+			place := c.data[row*c.stride+column:]
+			if width == kn.width {
+				kn.tiles[height-1](left.depth, a, b, bStride, &place[0], c.stride)
+			} else {
+				// A tile that sticks out of C is computed beside it.
+				for i := range height {
+					copy(s.edge[i*kn.width:], place[i*c.stride:i*c.stride+width])
+				}
+				kn.tiles[height-1](left.depth, a, b, bStride, &s.edge[0], kn.width)
+				for i := range height {
+					copy(place[i*c.stride:i*c.stride+width], s.edge[i*kn.width:])
+				}
+			}
+			row += height
+		}
+	}
+}
+
+func ceilDiv(a, b int) int { return (a + b - 1) / b }
+
+func roundUp(a, unit int) int { return ceilDiv(a, unit) * unit }
