@@ -83,9 +83,9 @@ func (m Metric) perFold() bool {
 	return m != R && m != Rho && m != CalibrationSlope && m != CalibrationIntercept
 }
 
-// raw is true for metrics of the trait itself, before the confounds are taken
+// Raw is true for metrics of the trait itself, before the confounds are taken
 // out.
-func (m Metric) raw() bool { return m == R2Confounds || m == R2Full || m == R2Added }
+func (m Metric) Raw() bool { return m == R2Confounds || m == R2Full || m == R2Added }
 
 // Options are the settings of a Design.
 type Options struct {

@@ -84,7 +84,7 @@ func (r *Repeat) part(l *layout, metric Metric, trait, from, to int) (value floa
 		return values
 	}
 	target, predicted := take(r.Target), take(r.Predicted)
-	if !metric.raw() {
+	if !metric.Raw() {
 		return scorePairs(metric, target, predicted)
 	}
 	// Deviations of the trait from the training mean of each person's fold.

@@ -35,7 +35,7 @@ type Heritability struct {
 	DZOppositePairs int     `name:"n_dz_opposite_sex" unit:"pairs" description:"Number of pairs of fraternal twins of opposite sex complete in the variable."`
 	SiblingPairs    int     `name:"n_sibling_pairs" unit:"pairs" description:"Number of pairs of full siblings who are not twins of each other, complete in the variable."`
 	SingleTwins     int     `name:"n_single_twins" unit:"people" description:"Number of twins whose co-twin lacks the variable or a covariate; they stay in and inform means and variances."`
-	DetectableA2    float64 `name:"detectable_a2" unit:"1" unfilled:"true" description:"Smallest a2 that a study of these families would find with a power of 0.8."`
+	DetectableA2    float64 `name:"detectable_a2" unit:"1" minimum:"0" maximum:"1" description:"Smallest a2 that so many complete twin pairs show with a power of 0.8 in the one-sided test of A given C at .05, when there is no C; empty without pairs of both kinds."`
 	DetectableC2    float64 `name:"detectable_c2" unit:"1" unfilled:"true" description:"Smallest c2 that a study of these families would find with a power of 0.8."`
 	Flags           string  `name:"flags" description:"Words, separated by semicolons, for what a reader should know before using the row, for instance suggests_dominance, same_in_twins or not_converged."`
 }

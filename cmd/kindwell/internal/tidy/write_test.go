@@ -198,7 +198,7 @@ func TestCellsThatAreRefused(t *testing.T) {
 	}{
 		{"category", func(r *Heritability) { r.Model = "ACDE" }, `table heritability, row 3, column "model": "ACDE" is none of ACE, ADE, AE, CE, E`},
 		{"key", func(r *Heritability) { r.Variable = "" }, `table heritability, row 3, column "variable": part of the key is missing`},
-		{"unfilled number", func(r *Heritability) { r.DetectableA2 = 0 }, `table heritability, row 3, column "detectable_a2": the column is declared as not computed in this version, but holds 0`},
+		{"unfilled number", func(r *Heritability) { r.DetectableC2 = 0 }, `table heritability, row 3, column "detectable_c2": the column is declared as not computed in this version, but holds 0`},
 		{"unfilled in a shared ending", func(r *Heritability) { r.Permutations = Int(99) }, `table heritability, row 3, column "permutations": the column is declared as not computed in this version, but holds 99`},
 		{"UTF-8", func(r *Heritability) { r.Flags = "\xff" }, `table heritability, row 3, column "flags": "\xff" is not UTF-8`},
 	} {

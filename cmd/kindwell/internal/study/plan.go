@@ -1,0 +1,203 @@
+package study
+
+import (
+	"fmt"
+	"slices"
+
+	"kindwell/cmd/kindwell/internal/cohort"
+	"kindwell/cmd/kindwell/internal/study/config"
+	"kindwell/cmd/kindwell/internal/tidy"
+	"kindwell/twin"
+)
+
+// Plan is a study whose tables are read and whose names are resolved: all
+// that a run needs, before anything is computed.
+type Plan struct {
+	Study  *config.Study
+	Cohort *cohort.Cohort
+
+	measures   []*measure
+	sets       []measureSet
+	predicting []measureSet // the sets of predict.sets
+	groups     []group
+	variables  []variable
+	foldTable  *cohort.FoldTable // nil without given folds
+	foldFiles  []cohort.InputFile
+	exclusions []tidy.Exclusion
+	warnings   []tidy.Warning
+}
+
+// group is a group of traits that the same people have, and those people.
+type group struct {
+	traits []string
+	rows   []int // people, by row of the people table
+}
+
+// variable is one whose variance is divided.
+type variable struct {
+	name      string
+	role      string // measure, trait, confound
+	transform config.Scale
+	values    []float64 // one a person, NaN where missing
+	measure   *measure  // nil unless it is one
+	// covariates are those fitted with it, without itself.
+	covariates columns
+}
+
+// Open reads a study file and its tables and resolves every name.
+func Open(path string) (*Plan, error) {
+	s, err := config.Load(path)
+	if err != nil {
+		return nil, err
+	}
+	c, err := cohort.Load(inputs(s))
+	if err != nil {
+		return nil, err
+	}
+	return newPlan(s, c)
+}
+
+// newPlan resolves the names of a study against its tables.
+func newPlan(s *config.Study, c *cohort.Cohort) (*Plan, error) {
+	p := &Plan{Study: s, Cohort: c}
+	for _, w := range c.Warnings {
+		p.warn(w.Analysis, w.About, w.Message)
+	}
+	for _, e := range c.Exclusions {
+		p.exclusions = append(p.exclusions, tidy.Exclusion(e))
+	}
+	var f faults
+	p.checkColumns(&f)
+	p.scaleMeasures(&f)
+	p.resolveSets(&f)
+	if err := f.err(); err != nil {
+		return nil, err
+	}
+	if s.Predict != nil {
+		p.choosePredicting()
+		p.makeGroups()
+		if err := p.readFolds(); err != nil {
+			return nil, err
+		}
+	}
+	if s.Heritability != nil {
+		p.chooseVariables()
+	}
+	return p, nil
+}
+
+// inputs says which tables a study needs and what it needs of them.
+func inputs(s *config.Study) cohort.Inputs {
+	in := cohort.Inputs{
+		Folder:       s.Path("."),
+		MissingCodes: s.MissingCodes,
+		People: cohort.PeopleInput{
+			File:    s.People.File,
+			Columns: peopleColumns(s.People.Columns),
+			Session: s.People.Session,
+			Rules:   rules(s.People),
+		},
+		Use: []string{},
+	}
+	if m := s.Measures; m != nil {
+		in.Measures = &cohort.MeasuresInput{Files: m.Tables(), Person: m.Columns.Person, Session: m.Session, Use: []string{}}
+		for _, set := range m.Sets {
+			in.Measures.Use = append(in.Measures.Use, set.Patterns...)
+		}
+		for _, t := range m.Transform {
+			in.Measures.Use = append(in.Measures.Use, t.Match...)
+		}
+	}
+	if t := s.Traits; t != nil {
+		for _, file := range t.Tables() {
+			in.Traits = append(in.Traits, cohort.TableInput{File: file, Person: t.Columns.Person, Session: t.Session})
+		}
+		in.Use = append(in.Use, t.Use...)
+		in.Numeric = t.Use
+	}
+	in.Use = append(in.Use, s.Confounds.Use...)
+	in.Use = append(in.Use, s.People.StructureBy...)
+	if s.Heritability != nil {
+		in.Use = append(in.Use, s.Heritability.Covariates...)
+	}
+	return in
+}
+
+func peopleColumns(c config.PeopleColumns) map[string]string {
+	return map[string]string{
+		"person": c.Person, "family": c.Family, "mother": c.Mother, "father": c.Father,
+		"twin_set": c.TwinSet, "zygosity": c.Zygosity, "mz_set": c.MZSet, "reared_in": c.RearedIn,
+		"birth_order": c.BirthOrder, "sex": c.Sex, "age": c.Age,
+	}
+}
+
+// rules turns the words of the study file into those of the pedigree.
+func rules(p config.People) twin.Rules {
+	var r twin.Rules
+	if p.UnknownParents == config.Unrelated {
+		r.UnknownParents = twin.AssumeUnrelated
+	}
+	if p.UnknownParent == config.OtherParent {
+		r.UnknownParent = twin.AssumeOtherParent
+	}
+	if p.RearedWith == config.RearedWithBoth {
+		r.RearedWith = twin.WithBoth
+	}
+	return r
+}
+
+// warn adds a row of warnings.csv.
+func (p *Plan) warn(analysis, about, message string) {
+	p.warnings = append(p.warnings, tidy.Warning{Analysis: analysis, About: about, Message: message})
+}
+
+// checkColumns checks that traits, confounds and covariates are columns, and
+// that traits are numbers.
+func (p *Plan) checkColumns(f *faults) {
+	s, c := p.Study, p.Cohort
+	names := c.Available
+	known := func(name, path string) *cohort.Variable {
+		v := c.Variables[name]
+		if v == nil {
+			f.name(s, path, fmt.Sprintf("%q is no column of the people or traits tables", name), name, names)
+		}
+		return v
+	}
+	if s.Traits != nil {
+		for i, name := range s.Traits.Use {
+			path := fmt.Sprintf("traits.use[%d]", i)
+			v := known(name, path)
+			if v != nil && !v.Numeric {
+				f.study(s, path, fmt.Sprintf("trait %q holds words, not numbers", name), "code it as numbers; categories can be confounds")
+			}
+			if slices.Contains(s.Confounds.Use, name) {
+				f.study(s, path, fmt.Sprintf("%q is a trait and a confound", name), "what is removed cannot be predicted: take it out of one of the two")
+			}
+		}
+	}
+	for i, name := range s.Confounds.Use {
+		known(name, fmt.Sprintf("confounds.use[%d]", i))
+	}
+	for i, name := range s.Confounds.Squares {
+		path := fmt.Sprintf("confounds.squares[%d]", i)
+		if v := known(name, path); v != nil && !v.Numeric {
+			f.study(s, path, fmt.Sprintf("%q holds words and has no square", name), "")
+		}
+	}
+	for i, name := range s.People.StructureBy {
+		known(name, fmt.Sprintf("people.structure_by[%d]", i))
+	}
+	if s.Heritability != nil && s.Given("heritability.covariates") {
+		for i, name := range s.Heritability.Covariates {
+			known(name, fmt.Sprintf("heritability.covariates[%d]", i))
+		}
+	}
+}
+
+// choosePredicting finds the sets that predict.
+func (p *Plan) choosePredicting() {
+	for _, name := range p.Study.Predict.Sets {
+		i := slices.IndexFunc(p.sets, func(s measureSet) bool { return s.name == name })
+		p.predicting = append(p.predicting, p.sets[i])
+	}
+}
