@@ -114,8 +114,16 @@ func TestArrangementsThatBlocksAllow(t *testing.T) {
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			p, _ := pedigree(t, c.people, Rules{})
-			if got := arrangements(p.Blocks(indices(p.Len()), c.opt)); got != c.want {
+			families := p.Blocks(indices(p.Len()), c.opt)
+			if got := arrangements(families); got != c.want {
 				t.Errorf("%d arrangements, want %d", got, c.want)
+			}
+			exchange, err := crossval.NewExchange(p.Len(), families)
+			if err != nil {
+				t.Fatal(err)
+			}
+			if got := exchange.Count(); !got.IsInt64() || got.Int64() != int64(c.want) {
+				t.Errorf("%v arrangements counted by crossval, want %d", got, c.want)
 			}
 		})
 	}
