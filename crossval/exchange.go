@@ -53,10 +53,6 @@ func (e *StructureError) Error() string {
 	return fmt.Sprintf("crossval: family %d of %d members has more symmetry than can be worked out", e.Family, e.Size)
 }
 
-// searchWork is the work allowed for each way of being related, in relations
-// looked at: a few seconds.
-const searchWork work = 1 << 30
-
 // NewExchange finds all arrangements of people 0..people-1 who fall into
 // families. An arrangement is allowed when every two places of a family get
 // the values of two members of one family who are related as they are, in both
@@ -73,9 +69,11 @@ const searchWork work = 1 << 30
 // wrong length, are an error; so is a family whose symmetries cannot be worked
 // out (*StructureError).
 func NewExchange(people int, families []Family) (*Exchange, error) {
-	return newExchange(people, families, searchWork)
+	return newExchange(people, families, work{relations: 1 << 30, members: 1 << 26})
 }
 
+// newExchange allows each way of being related some work: for callers a few
+// seconds and a quarter of a gigabyte.
 func newExchange(people int, families []Family, allowed work) (*Exchange, error) {
 	if err := checkFamilies(people, families); err != nil {
 		return nil, err

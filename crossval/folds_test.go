@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -327,7 +328,14 @@ func TestLevelThatCannotBeKept(t *testing.T) {
 	// Three families in two outer folds: some two of them share one, always.
 	site = []int{1, 1, 1, 1, 1, 0, 0, 0, 0, 0}
 	_, err = crossval.BalancedFolds(family, crossval.FoldOptions{Outer: 2, Inner: 2, Levels: [][]int{site}})
-	if !errors.As(err, &missing) || missing.Tries != 100 || missing.Families != 3 {
+	if !errors.As(err, &missing) || missing.Tries != 100 || missing.Families != 3 || !strings.HasSuffix(err.Error(), " cannot be kept in every training set in 100 draws") {
+		t.Fatalf("got %v", err)
+	}
+
+	// Two families for three folds.
+	class := []int{1, 1, 1, 0, 0, 0, 0, 0, 0, 0}
+	_, err = crossval.BalancedFolds(family, crossval.FoldOptions{Outer: 3, Inner: 2, Strata: class})
+	if !errors.As(err, &missing) || missing.Column != -1 || err.Error() != "crossval: repeat 0: stratum 1 (3 people in 2 families) cannot be kept in every outer fold" {
 		t.Fatalf("got %v", err)
 	}
 }

@@ -257,12 +257,14 @@ func TestValidateCellsAndFamilies(t *testing.T) {
 	var got *crossval.FoldError
 	folds := drawn()
 	folds.Repeats[0].Cell[3] = 1 - folds.Repeats[0].Cell[3]
-	if err := folds.Validate(family); !errors.As(err, &got) || got.Fault != crossval.CellDiffers || got.Person != 3 || got.Family != 3 {
+	if err := folds.Validate(family); !errors.As(err, &got) || got.Fault != crossval.CellDiffers || got.Person != 3 || got.Family != 3 ||
+		!strings.HasSuffix(got.Error(), "of person 3 (family 3) is not the person's cell") {
 		t.Errorf("cell: %v", err)
 	}
 	folds = drawn()
 	folds.PerFamily = true
-	if err := folds.Validate(family); !errors.As(err, &got) || got.Fault != crossval.FamilyNotAlone || folds.Repeats[0].Outer[got.Person] != folds.Repeats[0].Outer[got.Other] {
+	if err := folds.Validate(family); !errors.As(err, &got) || got.Fault != crossval.FamilyNotAlone || folds.Repeats[0].Outer[got.Person] != folds.Repeats[0].Outer[got.Other] ||
+		!strings.Contains(got.Error(), " is to hold one family and holds person ") {
 		t.Errorf("one family a fold: %v", err)
 	}
 	for name, spoil := range map[string]func(*crossval.Folds){

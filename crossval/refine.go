@@ -8,12 +8,21 @@ import (
 // errTooLong says that a search has used up its work.
 var errTooLong = errors.New("crossval: search too long")
 
-// work is what a search may still do, in relations looked at.
-type work int
+// work is what a search may still do: relations it looks at, and members of
+// all the permutations it keeps.
+type work struct{ relations, members int }
 
 func (w *work) spend(relations int) error {
-	*w -= work(relations)
-	if *w < 0 {
+	w.relations -= relations
+	if w.relations < 0 {
+		return errTooLong
+	}
+	return nil
+}
+
+func (w *work) keep(members int) error {
+	w.members -= members
+	if w.members < 0 {
 		return errTooLong
 	}
 	return nil

@@ -21,9 +21,6 @@ type symmetries struct {
 // leaves all where they are.
 type stage [][]int32
 
-// maxEntries bounds the memory of the stages of one structure.
-const maxEntries = 1 << 25
-
 // newSymmetries finds them for a shape with its colouring. Peers, members any two of whom may change places
 // with nobody else moving, are set aside first: they are most of what moves in
 // families (the twins of a pair, the children of two parents), and what is
@@ -50,11 +47,9 @@ func newSymmetries(s *shape, c colouring, w *work) (*symmetries, error) {
 	if err != nil {
 		return nil, err
 	}
-	entries := 0
 	for _, moves := range chain {
-		entries += len(moves) * s.size
-		if entries > maxEntries {
-			return nil, errTooLong
+		if err := w.keep(len(moves) * s.size); err != nil {
+			return nil, err
 		}
 		lifted := make(stage, len(moves))
 		for m, move := range moves {
@@ -138,14 +133,14 @@ func (s *shape) standIns(sets [][]int) *shape {
 // first of them moving nobody. Symmetries already found for later members are
 // used to save searches: where one member can come to, so can all to whom
 // these symmetries take it.
-func (p *path) chain(w *work) ([][][]int, error) {
+func (p *path) chain(w *work) ([]stage, error) {
 	for !p.last().discrete() {
 		if err := p.extend(w); err != nil {
 			return nil, err
 		}
 	}
 	var known [][]int // symmetries that leave base[:depth] where they are
-	var chain [][][]int
+	var chain []stage
 	for depth := len(p.base) - 1; depth >= 0; depth-- {
 		start := p.base[depth]
 		colour := p.colours[depth].of
@@ -200,14 +195,14 @@ func orbit(start int, moves [][]int, size int) []bool {
 
 // transversal returns one product of moves for each member of the orbit of
 // start, the identity first.
-func transversal(start int, moves [][]int, size int, w *work) ([][]int, error) {
-	identity := make([]int, size)
+func transversal(start int, moves [][]int, size int, w *work) (stage, error) {
+	identity := make([]int32, size)
 	for i := range identity {
-		identity[i] = i
+		identity[i] = int32(i)
 	}
 	seen := make([]bool, size)
 	seen[start] = true
-	products := [][]int{identity}
+	products := stage{identity}
 	for next := 0; next < len(products); next++ {
 		for _, move := range moves {
 			to := move[products[next][start]]
@@ -215,12 +210,12 @@ func transversal(start int, moves [][]int, size int, w *work) ([][]int, error) {
 				continue
 			}
 			seen[to] = true
-			if err := w.spend(size); err != nil {
+			if err := w.keep(size); err != nil {
 				return nil, err
 			}
-			product := make([]int, size)
+			product := make([]int32, size)
 			for i, at := range products[next] {
-				product[i] = move[at]
+				product[i] = int32(move[at])
 			}
 			products = append(products, product)
 		}
