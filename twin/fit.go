@@ -49,9 +49,12 @@ type Fit struct {
 	// Fixed are the fixed effects at the bounded optimum, intercept first.
 	Fixed []FixedEffect
 
-	// Converged says that both searches ended at a maximum. Intervals and tests
-	// refuse a fit that did not.
-	Converged bool
+	// Converged says that the bounded search ended at a maximum, and
+	// SignedConverged that the unbounded one did. Where the latter did not, the
+	// signed values are NaN: in small samples the unbounded likelihood may rise
+	// all the way to the edge of the region where V is positive definite.
+	// Intervals and tests refuse what did not converge.
+	Converged, SignedConverged bool
 	// Evaluations counts evaluations of the likelihood, Restarts the starts
 	// beyond the first, over both searches.
 	Evaluations, Restarts int
@@ -85,7 +88,7 @@ func (f *Fit) SignedShare(c Component) float64 {
 // derivatives, from several starts.
 //
 // The errors are *UnidentifiedError, *InbreedingError and ErrNoMaximum. A
-// search that did not converge is no error but a fit with Converged false.
+// search that did not converge is no error but a fit that says so.
 func (s *Sample) Fit(model Model, opt FitOptions) (*Fit, error) {
 	lik := s.likelihood(model, opt.Criterion)
 	if model.Has(D) && s.inbred >= 0 {
@@ -98,30 +101,25 @@ func (s *Sample) Fit(model Model, opt FitOptions) (*Fit, error) {
 	all := []group{{members: upTo(m + 1), total: 1}}
 	starts := startingShares(m)
 
-	bounded, err := best(newSearch(lik, all, true), starts)
-	if err != nil {
-		return nil, err
+	bounded, ok := best(newSearch(lik, all, true), starts)
+	if !ok {
+		return nil, ErrNoMaximum
 	}
-	signed, err := best(newSearch(lik, all, false), append([][]float64{bounded.shares}, starts...))
-	if err != nil {
-		return nil, err
-	}
+	signed, signedOK := best(newSearch(lik, all, false), append([][]float64{bounded.shares}, starts...))
 	f := &Fit{
 		Model: model, Criterion: opt.Criterion, People: s.People(), Families: s.Families(),
 		Parameters:  s.columns.width - 1 + m + 1,
-		Converged:   bounded.converged && signed.converged,
+		Converged:   bounded.converged,
 		Evaluations: lik.evaluations,
 		Restarts:    2*len(starts) - 1,
-		shares:      bounded.shares, signed: signed.shares,
+		shares:      bounded.shares,
 	}
-	f.LogLik, f.SignedLogLik = s.logLik(lik, bounded.deviance), s.logLik(lik, signed.deviance)
+	f.LogLik = s.logLik(lik, bounded.deviance)
 	f.AIC = -2*f.LogLik + 2*float64(f.Parameters)
 	f.BIC = -2*f.LogLik + float64(f.Parameters)*math.Log(float64(f.Families))
 
-	p := lik.newPoint()
 	unit := s.columns.scale * s.columns.scale
-	lik.at(signed.shares[:m], p)
-	signedTotal := p.s2 * unit
+	p := lik.newPoint()
 	lik.at(bounded.shares[:m], p)
 	f.Total = p.s2 * unit
 	for i, c := range model.components() {
@@ -129,10 +127,22 @@ func (s *Sample) Fit(model Model, opt FitOptions) (*Fit, error) {
 			Component: c,
 			Variance:  bounded.shares[i] * f.Total, Share: bounded.shares[i],
 			AtBound:        bounded.shares[i] == 0,
-			SignedVariance: signed.shares[i] * signedTotal, SignedShare: signed.shares[i],
+			SignedVariance: math.NaN(), SignedShare: math.NaN(),
 		})
 	}
 	f.Fixed = s.columns.effects(lik.beta, lik.factor, p.s2)
+
+	f.SignedConverged = signedOK && signed.converged
+	f.SignedLogLik = math.NaN()
+	if f.SignedConverged {
+		f.signed = signed.shares
+		f.SignedLogLik = s.logLik(lik, signed.deviance)
+		lik.at(signed.shares[:m], p)
+		for i := range f.Components {
+			f.Components[i].SignedShare = signed.shares[i]
+			f.Components[i].SignedVariance = signed.shares[i] * p.s2 * unit
+		}
+	}
 	return f, nil
 }
 
@@ -177,31 +187,32 @@ func startingShares(m int) [][]float64 {
 	return starts
 }
 
-// best searches from every start and returns the least deviance. Equal ones
-// within rounding count as the first.
-func best(s *search, starts [][]float64) (found, error) {
+// leastDistance is the smallest pivot of V at a maximum that counts. Closer to
+// the edge of positive definiteness the likelihood is climbing without end.
+const leastDistance = 1e-8
+
+// best searches from every start and returns the least deviance that a search
+// converged to, or the least at all where none did. It reports false when every
+// search ran to the edge of the region where V is positive definite.
+func best(s *search, starts [][]float64) (found, bool) {
 	var least found
 	have := false
 	for _, w := range starts {
 		f, ok := s.from(w)
-		if ok && (!have || better(f, least, s.lik.people)) {
+		if ok && f.pivot > leastDistance && (!have || better(f, least, s.lik.people)) {
 			least, have = f, true
 		}
 	}
-	if !have || least.pivot < 1e-8 {
-		return found{}, ErrNoMaximum
-	}
-	return least, nil
+	return least, have
 }
 
-// better reports whether a is a lower minimum than b; of two equal ones a
-// converged one is better.
+// better reports whether a is to be preferred to b: converged, then lower. Of
+// equal ones within rounding neither is better.
 func better(a, b found, people int) bool {
-	tie := 1e-11 * float64(people)
-	if math.Abs(a.deviance-b.deviance) <= tie {
-		return a.converged && !b.converged
+	if a.converged != b.converged {
+		return a.converged
 	}
-	return a.deviance < b.deviance
+	return a.deviance < b.deviance-1e-11*float64(people)
 }
 
 // identified checks that the model's matrices differ on the sample, after the

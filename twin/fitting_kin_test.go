@@ -26,6 +26,9 @@ func (k *tableKin) same(i, j int) bool {
 }
 
 func (k *tableKin) Family(i int) int { return k.family[i] }
+func (k *tableKin) Len() int         { return len(k.family) }
+func (k *tableKin) Mother(i int) int { return k.mother[i] }
+func (k *tableKin) Father(i int) int { return k.father[i] }
 
 // Kinship by recursion over the parents of the later person; parents come
 // before their children in the table or are ids of nobody in it.

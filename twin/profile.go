@@ -83,7 +83,10 @@ func (s *Sample) Interval(fit *Fit, q Quantity, confidence float64) (Interval, e
 	if len(inside) == 0 {
 		panic(fmt.Sprintf("twin: model %s has no %s", fit.Model, q))
 	}
-	if !fit.Converged {
+	if what.signed && !fit.SignedConverged {
+		return Interval{}, &NotConvergedError{What: "unbounded model " + fit.Model.String()}
+	}
+	if !what.signed && !fit.Converged {
 		return Interval{}, &NotConvergedError{What: "model " + fit.Model.String()}
 	}
 	if len(outside) == 0 {

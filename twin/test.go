@@ -111,6 +111,11 @@ func (s *Sample) Test(null, full *Fit) (*Test, error) {
 	t.PMixture = t.Weights.Tail(t.Ratio)
 	t.Statistic, t.P = t.Ratio, t.PMixture
 	if null.Model == ModelCE && full.Model == ModelACE {
+		for _, f := range []*Fit{null, full} {
+			if !f.SignedConverged {
+				return nil, &NotConvergedError{What: "unbounded model " + f.Model.String()}
+			}
+		}
 		r, err := ratio(null.SignedLogLik, full.SignedLogLik, s.People(), full.Model)
 		if err != nil {
 			return nil, err

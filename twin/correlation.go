@@ -1,0 +1,208 @@
+package twin
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"gonum.org/v1/gonum/mat"
+)
+
+// CorrelationOptions are the choices of a correlation of relatives.
+type CorrelationOptions struct {
+	// Confidence of the interval, between 0 and 1, for instance 0.95.
+	Confidence float64
+	// Replicates is the number of bootstrap samples of families behind the
+	// interval of an interclass correlation, 2000 when 0. Seed names their
+	// stream. Intraclass correlations use neither.
+	Replicates int
+	Seed       uint64
+}
+
+// Correlation is how alike the people of one relation are.
+type Correlation struct {
+	Relation Relation
+	// Pairs counts the pairs in the sample, Families those with such a pair.
+	Pairs, Families int
+	// Value is the correlation, Low and High its interval.
+	Value, Low, High float64
+	Confidence       float64
+	// Bootstrap says that the interval is the percentile bootstrap of families,
+	// of an interclass correlation; else it is the profile likelihood's.
+	Bootstrap bool
+}
+
+// siblings reports whether r is a relation among the children of a parent.
+func siblings(r Relation) bool { return r >= MZ && r <= HalfSibling }
+
+// Correlation estimates the correlation of a relation in the sample, after its
+// covariates.
+//
+// Twins, siblings and half-siblings have no first and second one: their
+// correlation is intraclass. It maximises the likelihood over everyone who has
+// such a relative present, with one mean, one variance and the covariates
+// inside the likelihood (McGue & Bouchard 1984, Behavior Genetics 14:325),
+//
+//	V = s2 (I + sum over relations of r_k B_k)
+//
+// where B_k is 1 for the pairs of relation k. Whole sibships enter, so that
+// pairs of one sibship are not taken for independent, and relations of siblings
+// other than the asked one have correlations of their own. The interval is the
+// profile likelihood's.
+//
+// A parent and a child, or a mother and a father, differ in kind: their
+// correlation is interclass. Over all pairs, parents (mothers) are regressed on
+// the constant and their covariates and children (fathers) on theirs, and the
+// residuals correlated. The interval holds the middle of the values from
+// families drawn with replacement. The sample's Kin must have the methods of
+// Lineage for these two relations.
+//
+// The errors are *TooFewError below three families with such a pair,
+// ErrNoVariance, and *NotConvergedError. Relations other than these panic.
+func (s *Sample) Correlation(r Relation, opt CorrelationOptions) (*Correlation, error) {
+	if !(opt.Confidence > 0 && opt.Confidence < 1) {
+		panic("twin: confidence must lie between 0 and 1")
+	}
+	pairs := s.pairsOf(r)
+	c := &Correlation{Relation: r, Pairs: len(pairs), Confidence: opt.Confidence}
+	last := -1
+	for _, p := range pairs {
+		if f := int(p.family); f != last {
+			c.Families++
+			last = f
+		}
+	}
+	if c.Families < 3 {
+		return nil, &TooFewError{What: fmt.Sprintf("families with a pair of relation %s", r), Have: c.Families, Need: 3}
+	}
+	switch {
+	case siblings(r):
+		return c, s.intraclass(c, pairs)
+	case r == ParentChild || r == Spouse:
+		return c, s.interclass(c, pairs, opt)
+	}
+	panic("twin: no correlation of relation " + r.String())
+}
+
+// pairIn is a pair of positions in the sample, first before second, and the
+// number of its family.
+type pairIn struct{ first, second, family int32 }
+
+// pairsOf lists the pairs of a relation, family by family.
+func (s *Sample) pairsOf(r Relation) []pairIn {
+	var pairs []pairIn
+	for f, members := range groupBy(len(s.people), s.familyOf) {
+		for b, second := range members {
+			for _, first := range members[:b] {
+				if s.relation(first, second) == r {
+					pairs = append(pairs, pairIn{first, second, int32(f)})
+				}
+			}
+		}
+	}
+	return pairs
+}
+
+func (s *Sample) familyOf(i int) int { return s.kin.Family(s.people[i]) }
+
+func (s *Sample) relation(i, j int32) Relation { return s.kin.Relation(s.people[i], s.people[j]) }
+
+// intraclass fills in the correlation of a relation among siblings.
+func (s *Sample) intraclass(c *Correlation, pairs []pairIn) error {
+	in := make([]bool, len(s.people))
+	for _, p := range pairs {
+		in[p.first], in[p.second] = true, true
+	}
+	var who []int32
+	for i, is := range in {
+		if is {
+			who = append(who, int32(i))
+		}
+	}
+	columns, err := s.subset(who)
+	if err != nil {
+		return err
+	}
+	// Relations get a place each as they are met, the asked one the first.
+	place := map[Relation]int{c.Relation: 0}
+	l := newLayout(len(who), func(i int) int { return s.familyOf(int(who[i])) }, func(i, j int) entries {
+		var e entries
+		if i != j {
+			if r := s.relation(who[i], who[j]); siblings(r) {
+				at, ok := place[r]
+				if !ok {
+					at = len(place)
+					place[r] = at
+				}
+				e[at] = 1
+			}
+		}
+		return e
+	})
+	m := len(place)
+	lik := newLikelihood(newMoments(l, columns.rows, columns.width), upTo(m), ML)
+	search := newSearch(lik, []group{{upTo(m + 1), 1}}, false)
+	least, ok := best(search, correlationStarts(m))
+	if !ok || !least.converged {
+		return &NotConvergedError{What: "correlation of relation " + c.Relation.String()}
+	}
+	p := &profile{lik: lik, inside: []int{0}, outside: upTo(m + 1)[1:]}
+	i, err := p.interval(least.shares, c.Confidence)
+	if err != nil {
+		return &NotConvergedError{What: "interval of the correlation of relation " + c.Relation.String()}
+	}
+	c.Value, c.Low, c.High = i.Estimate, i.Low, i.High
+	return nil
+}
+
+// correlationStarts are the starts of a search over m correlations: none, some
+// of the first, and some of all.
+func correlationStarts(m int) [][]float64 {
+	none, first, all := make([]float64, m+1), make([]float64, m+1), make([]float64, m+1)
+	none[m] = 1
+	first[0], first[m] = 0.5, 0.5
+	for k := range m {
+		all[k] = 0.2
+	}
+	all[m] = 1 - 0.2*float64(m)
+	return [][]float64{none, first, all}
+}
+
+// subset prepares the variable and covariates of some people of the sample
+// anew. The sample's own columns serve as well as the values given: they are
+// linear combinations of them.
+func (s *Sample) subset(who []int32) (*columns, error) {
+	w := s.columns.width
+	y := make([]float64, len(who))
+	var x *mat.Dense
+	if w > 2 {
+		x = mat.NewDense(len(who), w-2, nil)
+	}
+	for at, i := range who {
+		row := s.columns.rows[int(i)*w : int(i+1)*w]
+		y[at] = row[0]
+		if x != nil {
+			x.SetRow(at, row[2:])
+		}
+	}
+	return newColumns(y, x, make([]string, w-2))
+}
+
+// percentiles returns the quantiles of values at (1 -/+ confidence)/2,
+// interpolated between order statistics so that the least and the greatest
+// value are the quantiles of 0 and 1. values are sorted.
+func percentiles(values []float64, confidence float64) (low, high float64) {
+	if len(values) == 0 {
+		return math.NaN(), math.NaN()
+	}
+	slices.Sort(values)
+	at := func(p float64) float64 {
+		h := p * float64(len(values)-1)
+		below := int(h)
+		if below+1 >= len(values) {
+			return values[len(values)-1]
+		}
+		return values[below] + (h-float64(below))*(values[below+1]-values[below])
+	}
+	return at((1 - confidence) / 2), at((1 + confidence) / 2)
+}
