@@ -74,10 +74,10 @@ func ExplainedShare(traits, confounds *mat.Dense) ([]float64, error) {
 		return nil, err
 	}
 	n, t := traits.Dims()
-	basis, dropped := confoundBasis(confounds, n)
+	basis, _ := confoundBasis(confounds, n)
 	values := standardColumns(traits)
 	shares := make([]float64, t)
-	if reportable(n, t, basis.Cols-1, len(dropped)) {
+	if reportable(n, t, basis.Cols-1) {
 		for j := range shares {
 			share, err := reportedShare(column(values.values, j), basis)
 			if err != nil {
@@ -102,11 +102,11 @@ func ExplainedShare(traits, confounds *mat.Dense) ([]float64, error) {
 	return shares, nil
 }
 
-// reportable says whether the regression report is safe and affordable: its
-// QR holds an n x n matrix a trait and its routine says nothing of dependent
-// columns.
-func reportable(n, traits, columns, dropped int) bool {
-	return dropped == 0 && columns > 0 && n > columns+2 && n <= 4000 && n*n*traits <= 4000*4000
+// reportable says whether the regression report is safe and affordable: it
+// needs independent columns, as those of a basis are, and holds an n x n matrix
+// a trait.
+func reportable(n, traits, columns int) bool {
+	return columns > 0 && n > columns+2 && n <= 4000 && n*n*traits <= 4000*4000
 }
 
 // reportedShare regresses one standardised trait on the confounds.
@@ -226,19 +226,15 @@ func standardColumns(a *mat.Dense) standardised {
 }
 
 // confoundBasis returns a basis (people x k) of the constant and the confounds
-// with Q'Q = people * I, the constant 1 first and every other column about 0,
-// and the confounds that were passed over because they are constant or follow
-// from those before them. Basis column j+1 is what the j-th confound kept adds
-// to those before it.
-func confoundBasis(confounds *mat.Dense, people int) (basis blas64.General, dropped []int) {
-	var kept []int
+// with Q'Q = people * I, the constant 1 first and every other column about 0.
+// Column j+1 is what confound kept[j] adds to those before it; confounds that
+// are constant or add nothing are not among those kept.
+func confoundBasis(confounds *mat.Dense, people int) (basis blas64.General, kept []int) {
 	var columns standardised
 	if confounds != nil {
 		columns = standardColumns(confounds)
 		for j, scale := range columns.scale {
-			if scale == 0 {
-				dropped = append(dropped, j)
-			} else {
+			if scale > 0 {
 				kept = append(kept, j)
 			}
 		}
@@ -255,7 +251,6 @@ func confoundBasis(confounds *mat.Dense, people int) (basis blas64.General, drop
 		if empty < 0 {
 			break
 		}
-		dropped = append(dropped, kept[empty])
 		kept = append(kept[:empty:empty], kept[empty+1:]...)
 	}
 	basis = newTable(people, len(kept)+1)
@@ -267,7 +262,7 @@ func confoundBasis(confounds *mat.Dense, people int) (basis blas64.General, drop
 			to[c+1] = v * root
 		}
 	}
-	return basis, dropped
+	return basis, kept
 }
 
 // orthonormalise replaces the columns of a, all of equal length, by an

@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 	"sync"
 	"sync/atomic"
 
@@ -13,8 +14,8 @@ import (
 	"kindwell/crossval"
 )
 
-// keepBytes bounds the decompositions that a Design keeps, and those that are
-// in memory at once when it keeps none.
+// keepBytes bounds the decompositions that a Design keeps, and about those that
+// are in memory at once when it keeps none.
 const keepBytes = 48 << 20
 
 // mostMissing is the share of people without a measure above which filling it
@@ -27,6 +28,7 @@ const mostMissing = 0.2
 // several goroutines.
 type Design struct {
 	opt       Options
+	keepBytes int
 	people    int
 	perFamily bool
 	source    *sources
@@ -84,6 +86,10 @@ type foldSizes struct {
 // (*ConfoundError), a measure missing in more than a fifth of the people, and
 // a metric that the folds do not allow.
 func NewDesign(measures, confounds *mat.Dense, folds *crossval.Folds, opt Options) (*Design, error) {
+	return newDesign(measures, confounds, folds, opt, keepBytes)
+}
+
+func newDesign(measures, confounds *mat.Dense, folds *crossval.Folds, opt Options, keepBytes int) (*Design, error) {
 	if err := opt.Validate(); err != nil {
 		return nil, err
 	}
@@ -98,7 +104,7 @@ func NewDesign(measures, confounds *mat.Dense, folds *crossval.Folds, opt Option
 	if err != nil {
 		return nil, err
 	}
-	d := &Design{opt: opt.filled(), people: n, perFamily: folds.PerFamily, layouts: layouts}
+	d := &Design{opt: opt.filled(), keepBytes: keepBytes, people: n, perFamily: folds.PerFamily, layouts: layouts}
 	d.measureFolds()
 	if err := d.checkMetric(); err != nil {
 		return nil, err
@@ -149,10 +155,17 @@ func (d *Design) checkMetric() error {
 // markers of missing values side by side, one row a person.
 func (d *Design) newSources(measures, confounds *mat.Dense) (*sources, error) {
 	n, p := measures.Dims()
-	basis, passedOver := confoundBasis(confounds, n)
-	d.notes.PassedOver = passedOver
+	basis, kept := confoundBasis(confounds, n)
+	if confounds != nil {
+		_, c := confounds.Dims()
+		for j := range c {
+			if !slices.Contains(kept, j) {
+				d.notes.PassedOver = append(d.notes.PassedOver, j)
+			}
+		}
+	}
 	columns := standardColumns(measures)
-	s := &sources{k: basis.Cols, p: p, markerOf: make([]int, p), scale: columns.scale, grain: columns.grain}
+	s := &sources{k: basis.Cols, p: p, confound: kept, markerOf: make([]int, p), scale: columns.scale, grain: columns.grain}
 	markers := 0
 	for j := range p {
 		missing := 0
@@ -215,7 +228,7 @@ func (d *Design) plan() {
 		from, bytes := 0, 0
 		for o := range l.outerCount() {
 			next := d.foldBytes(l, o)
-			if o > from && bytes+next > keepBytes && !whole {
+			if o > from && bytes+next > d.keepBytes && !whole {
 				d.stages = append(d.stages, stage{r, from, o})
 				from, bytes = o, 0
 			}
@@ -255,7 +268,7 @@ func (d *Design) prepare() error {
 			bytes += d.foldBytes(l, o)
 		}
 	}
-	keep := bytes <= keepBytes
+	keep := bytes <= d.keepBytes
 	zero := make([]ZeroWeight, d.source.p)
 	for j := range zero {
 		zero[j].Measure = j

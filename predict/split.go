@@ -22,6 +22,7 @@ type split struct {
 type sources struct {
 	all      blas64.General
 	k, p     int       // basis columns (the constant first), measures
+	confound []int     // basis column j+1 is of confound[j]
 	markerOf []int     // marker column of a measure, counted from 0 behind the measures; -1 for none
 	scale    []float64 // per measure, its deviation over all people, the unit here
 	grain    []float64 // per measure, the deviation that the rounding of its values alone can make
@@ -74,7 +75,7 @@ func (s *sources) factor(c blas64.General, sp *split) (triangle blas64.General, 
 	whole := math.Sqrt(float64(s.all.Rows))
 	for j := range s.k {
 		if math.Abs(triangle.Data[j*triangle.Stride+j]) < emptyTraining*whole {
-			return triangle, nil, &ConfoundError{Confound: j - 1, Repeat: sp.repeat, Outer: sp.outer, Inner: sp.inner}
+			return triangle, nil, &ConfoundError{Confound: s.confound[j-1], Repeat: sp.repeat, Outer: sp.outer, Inner: sp.inner}
 		}
 	}
 	return triangle, tau, nil
