@@ -119,6 +119,7 @@ func (p *Plan) divide(v *variable) (divided, error) {
 		return refuse(flagNotFitted, "not fitted: "+plain(err))
 	}
 	fits := p.fitModels(v, sample, &d)
+	p.addCorrelations(v, rows, sample, &d)
 	p.addTests(v, sample, fits, &d)
 	return d, p.fillHeadline(sample, fits, &d)
 }

@@ -170,9 +170,6 @@ func (p *Plan) checkColumns(f *faults) {
 			if v != nil && !v.Numeric {
 				f.study(s, path, fmt.Sprintf("trait %q holds words, not numbers", name), "code it as numbers; categories can be confounds")
 			}
-			if slices.Contains(s.Confounds.Use, name) {
-				f.study(s, path, fmt.Sprintf("%q is a trait and a confound", name), "what is removed cannot be predicted: take it out of one of the two")
-			}
 		}
 	}
 	for i, name := range s.Confounds.Use {
