@@ -90,13 +90,18 @@ type Cohort struct {
 	Available []string
 	// Measures is nil when the study has none.
 	Measures *Measures
-	// Warnings, Exclusions and InputFiles are in the order of the tables.
-	Warnings   []Warning
-	Exclusions []Exclusion
-	InputFiles []InputFile
+	// Findings are what the tables gave rise to.
+	Findings
 
 	index  map[string]int
 	inputs Inputs
+}
+
+// Findings are what else comes of reading tables, in their order.
+type Findings struct {
+	Warnings   []Warning
+	Exclusions []Exclusion
+	InputFiles []InputFile
 }
 
 // Index finds a person by id.
@@ -129,18 +134,18 @@ func Load(in Inputs) (*Cohort, error) {
 }
 
 // ReadMeasures reads further tables of measures of the people of the cohort, as
-// when states were learnt anew in every fold. Warnings and exclusions of theirs
-// are returned, not added to the cohort's. The error is *Faults.
-func (c *Cohort) ReadMeasures(in MeasuresInput) (*Measures, []Warning, []Exclusion, error) {
+// when states were learnt anew in every fold. What they give rise to is returned,
+// not added to the cohort's. The error is *Faults.
+func (c *Cohort) ReadMeasures(in MeasuresInput) (*Measures, Findings, error) {
 	l := &loader{
 		in: c.inputs, missing: newMissingCells(c.inputs.MissingCodes),
 		cohort: &Cohort{People: c.People, index: c.index}, place: make(map[string]string),
 	}
 	m := l.loadMeasures(in)
 	if err := l.faults.err(); err != nil {
-		return nil, nil, nil, err
+		return nil, Findings{}, err
 	}
-	return m, l.cohort.Warnings, l.cohort.Exclusions, nil
+	return m, l.cohort.Findings, nil
 }
 
 // loader is the state of one Load.

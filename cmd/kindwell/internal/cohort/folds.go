@@ -42,9 +42,9 @@ type GivenRepeat struct {
 	InnerLabels [][]string
 }
 
-// ReadFolds reads tables of given folds. The input files are returned, not added
-// to the cohort's. The error is *Faults.
-func (c *Cohort) ReadFolds(in FoldsInput) (*FoldTable, []InputFile, error) {
+// ReadFolds reads tables of given folds. What they give rise to is returned, not
+// added to the cohort's. The error is *Faults.
+func (c *Cohort) ReadFolds(in FoldsInput) (*FoldTable, Findings, error) {
 	l := &loader{in: c.inputs, missing: newMissingCells(c.inputs.MissingCodes), cohort: &Cohort{}}
 	f := &FoldTable{cohort: c}
 	f.outer = l.readFoldList(c, in, in.Outer, "repeat", "fold")
@@ -52,9 +52,9 @@ func (c *Cohort) ReadFolds(in FoldsInput) (*FoldTable, []InputFile, error) {
 		f.inner = l.readFoldList(c, in, in.Inner, "repeat", "fold", "inner_fold")
 	}
 	if err := l.faults.err(); err != nil {
-		return nil, nil, err
+		return nil, Findings{}, err
 	}
-	return f, l.cohort.InputFiles, nil
+	return f, l.cohort.Findings, nil
 }
 
 // foldList is one table of folds. A path is people_group (when there is one),
@@ -122,13 +122,14 @@ func (l *loader) readFoldList(c *Cohort, in FoldsInput, file string, keys ...str
 	defer func() { l.faults.take(&faults) }()
 	var person string
 	t := l.read(file, &faults, typing{
-		check: func(g *grid, faults *collector) {
+		check: func(g *grid, faults *collector) bool {
 			person = l.personColumn(g, in.Person, "folds", faults)
 			for _, key := range keys {
 				if !contains(g.names, key) {
 					faults.add(g.noColumn(key, "a table of folds has repeat, fold (and inner_fold) and person"))
 				}
 			}
+			return faults.empty()
 		},
 		role: func(name string) Role {
 			if name == person || name == groupColumn || contains(keys, name) {

@@ -115,10 +115,11 @@ func (l *loader) loadMeasureTable(in MeasuresInput, file string, faults *collect
 		return name != person && name != in.Session && !isIDRole(name) && (in.Use == nil || matches(in.Use, name))
 	}
 	t := l.read(file, faults, typing{
-		check: func(g *grid, faults *collector) {
+		check: func(g *grid, faults *collector) bool {
 			person = l.personColumn(g, in.Person, "measures", faults)
 			l.require(g, in.Session, "measures.session", faults)
 			l.refuseRepeatedNames(g, faults, measure)
+			return person != ""
 		},
 		role: func(name string) Role {
 			switch {

@@ -50,7 +50,7 @@ func (l *loader) loadPeople() {
 	p := &peopleTable{column: make(map[string]string), role: make(map[string]string), text: make(map[string][]string)}
 	in := l.in.People
 	p.Table = l.read(in.File, &faults, typing{
-		check:    func(g *grid, faults *collector) { l.checkPeopleColumns(p, g, faults) },
+		check:    func(g *grid, faults *collector) bool { return l.checkPeopleColumns(p, g, faults) },
 		role:     func(name string) Role { return l.peopleColumnRole(p, name) },
 		topCoded: func() string { return p.column[ageRole] },
 		warn:     func(about, message string) { l.warn("people", about, message) },
@@ -66,7 +66,7 @@ func (l *loader) loadPeople() {
 	for i, id := range c.People {
 		c.index[id] = i
 	}
-	l.peopleVariables(p)
+	l.peopleVariables(p, &faults)
 	if !faults.empty() {
 		return
 	}
@@ -90,7 +90,7 @@ func (l *loader) loadPeople() {
 }
 
 // checkPeopleColumns settles which column plays which role.
-func (l *loader) checkPeopleColumns(p *peopleTable, g *grid, faults *collector) {
+func (l *loader) checkPeopleColumns(p *peopleTable, g *grid, faults *collector) bool {
 	in := l.in.People
 	named := make([]string, 0, len(in.Columns))
 	for role := range in.Columns {
@@ -134,6 +134,7 @@ func (l *loader) checkPeopleColumns(p *peopleTable, g *grid, faults *collector) 
 		}
 	}
 	l.warnNearlyRoles(p, g)
+	return faults.empty()
 }
 
 // warnNearlyRoles points at columns that seem to be one of ours under another
@@ -296,7 +297,7 @@ func zygosityHint(cell string) string {
 }
 
 // peopleVariables makes variables of the columns.
-func (l *loader) peopleVariables(p *peopleTable) {
+func (l *loader) peopleVariables(p *peopleTable, faults *collector) {
 	lines := p.rows.lines(p.Table)
 	for _, column := range p.Names() {
 		name, role := column, p.role[column]
@@ -317,6 +318,9 @@ func (l *loader) peopleVariables(p *peopleTable) {
 			v.categorical(p.text[role])
 		default:
 			l.fillVariable(v, "people", p.Table, p.rows, nil, 0)
+		}
+		if l.numeric[name] && !v.Numeric {
+			faults.add(p.headerFault(column, "the study uses it as numbers, but a column of %s is read as words", name))
 		}
 		l.place[name] = p.file
 		l.cohort.Variables[name] = v

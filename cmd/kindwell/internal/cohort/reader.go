@@ -49,8 +49,8 @@ func readGrid(s *source, typing typing, faults *collector) *grid {
 	if g == nil {
 		return nil
 	}
-	if typing.check != nil {
-		typing.check(g, faults)
+	if typing.check != nil && !typing.check(g, faults) {
+		return nil
 	}
 	width := len(g.names)
 	g.prepare(typing, min(bytes.Count(s.text, []byte{'\n'}), len(s.text)/width+1))

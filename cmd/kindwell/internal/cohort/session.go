@@ -39,7 +39,7 @@ func groupRows(t *Table, person, session, hint string, faults *collector) *perso
 			continue
 		}
 		if session != "" && p.label[row] == "" {
-			faults.add(t.Fault(row, session, "", "the session is missing; name it, or delete the row"))
+			faults.add(t.Fault(row, session, "", "the session is missing; fill it in, or delete the row"))
 		}
 		i, seen := index[id]
 		if !seen {

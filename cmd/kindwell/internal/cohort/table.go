@@ -173,8 +173,9 @@ type typing struct {
 	numberHint string
 	// warn takes the warnings; nil when there can be none.
 	warn func(about, message string)
-	// check, if any, looks at the names of the columns before the cells.
-	check func(g *grid, faults *collector)
+	// check, if any, looks at the names of the columns before the cells; false
+	// when these cannot be understood.
+	check func(g *grid, faults *collector) bool
 }
 
 func (t typing) topCodes(name string) bool { return t.topCoded != nil && t.topCoded() == name }

@@ -12,12 +12,13 @@ func (l *loader) loadTraits(in TableInput) {
 	defer func() { l.faults.take(&faults) }()
 	var person string
 	t := l.read(in.File, &faults, typing{
-		check: func(g *grid, faults *collector) {
+		check: func(g *grid, faults *collector) bool {
 			person = l.personColumn(g, in.Person, "traits", faults)
 			l.require(g, in.Session, "traits.session", faults)
 			l.refuseRepeatedNames(g, faults, func(name string) bool {
 				return name != person && name != in.Session && !isIDRole(name) && l.wanted(name)
 			})
+			return person != ""
 		},
 		role: func(name string) Role {
 			switch {
