@@ -203,8 +203,10 @@ func (l *loader) personColumn(g *grid, given, key string, faults *collector) str
 	const ours = "person"
 	theirs := l.in.People.Columns[ours]
 	switch {
+	case given != "" && !contains(g.names, given):
+		l.require(g, given, key+".columns", faults)
+		return ""
 	case given != "":
-		l.require(g, given, key, faults)
 		return given
 	case contains(g.names, ours):
 		return ours

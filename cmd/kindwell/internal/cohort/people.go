@@ -372,7 +372,6 @@ func (p *peopleTable) noteMessage(note twin.Note, c *Cohort) string {
 		if !found {
 			continue
 		}
-		rest = strings.TrimPrefix(rest, `"`)
 		if slices.ContainsFunc(note.People, func(i int) bool {
 			who := c.Records[i]
 			return strings.HasPrefix(rest, who.ID) || who.Family != "" && strings.HasPrefix(rest, who.Family)

@@ -160,6 +160,44 @@ func TestSessionsInWords(t *testing.T) {
 	want(t, "site", levelsOf(t, c, "site"), []string{"north"})
 }
 
+// Twins who were asked on different days differ by a year at most.
+func TestTwinsOfSlightlyDifferentAge(t *testing.T) {
+	c := mustLoad(t, study{people: "person,twin_set,age\nA,T,20\nB,T,21\nC,U,20\nD,U,21.25\nE,V,20\nF,V,20.5\nG,W,20\nH,W,NA\nI,X,7\nJ,X,7\nK,X,9\n"})
+	var about []Warning
+	for _, w := range c.Warnings {
+		if w.About == "age" {
+			about = append(about, w)
+		}
+	}
+	checkMessages(t, about, `people, age: people.csv, rows 4 and 5: twins of different age (20 and 21.25)
+people, age: people.csv, rows 10 and 12: twins of different age (7 and 9)
+people, age: people.csv, rows 2 and 6: 2 twin sets whose ages differ by a year at most (asked on different days?)
+`)
+}
+
+// A person without any value stays missing, and many rows are counted.
+func TestManyRows(t *testing.T) {
+	text := "person,visit,height,sex\n"
+	for i := range 13 {
+		text += fmt.Sprintf("P%d,1,NA,other\nP%d,2,,other\n", i, i)
+	}
+	c := mustLoad(t, study{people: text, in: sessions("visit", "", "")})
+	want(t, "height", numbersOf(t, c, "height"), slices.Repeat([]float64{-1}, 13))
+	if !strings.HasPrefix(c.Warnings[0].Message, "people.csv, rows 2, 3, 4, 5, 6, 7, 8, 9, 10, 11 and 16 more: 26 cells") {
+		t.Error(c.Warnings[0].Message)
+	}
+}
+
+func TestAgeAsATrait(t *testing.T) {
+	s := study{people: "person,age\nA,30\nB,x\nC,31\n", in: numeric("age")}
+	_, err := s.load(t)
+	if err == nil || !strings.HasPrefix(err.Error(), `people.csv:3: column "age": "x": is not a number`) {
+		t.Error(err)
+	}
+	s.in = func(in *Inputs) { in.Categories = []string{"age"} }
+	want(t, "age", mustLoad(t, s).Variables["age"].Levels, []string{"30", "31", "x"})
+}
+
 func TestColumnsUnderAnotherSpelling(t *testing.T) {
 	c := mustLoad(t, study{people: "person,Mother,father_id,twinset,zygosty,Birth order,fam,sage\nA,M,P,T,MZ,1,F1,x\n"})
 	checkMessages(t, c.Warnings, `people, mother: people.csv has no column mother; if "Mother" is meant, map it (people: {columns: {mother: Mother}})
