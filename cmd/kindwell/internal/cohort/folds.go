@@ -42,9 +42,9 @@ type GivenRepeat struct {
 	InnerLabels [][]string
 }
 
-// ReadFolds reads tables of given folds. What they give rise to is returned, not
-// added to the cohort's. The error is *Faults.
-func (c *Cohort) ReadFolds(in FoldsInput) (*FoldTable, Findings, error) {
+// ReadFolds reads tables of given folds. The input files are returned, not added
+// to the cohort's. The error is *Faults.
+func (c *Cohort) ReadFolds(in FoldsInput) (*FoldTable, []InputFile, error) {
 	l := &loader{in: c.inputs, missing: newMissingCells(c.inputs.MissingCodes), cohort: &Cohort{}}
 	f := &FoldTable{cohort: c}
 	f.outer = l.readFoldList(c, in, in.Outer, "repeat", "fold")
@@ -52,9 +52,9 @@ func (c *Cohort) ReadFolds(in FoldsInput) (*FoldTable, Findings, error) {
 		f.inner = l.readFoldList(c, in, in.Inner, "repeat", "fold", "inner_fold")
 	}
 	if err := l.faults.err(); err != nil {
-		return nil, Findings{}, err
+		return nil, nil, err
 	}
-	return f, l.cohort.Findings, nil
+	return f, l.cohort.InputFiles, nil
 }
 
 // foldList is one table of folds. A path is people_group (when there is one),
