@@ -97,6 +97,9 @@ func newDesign(measures, confounds *mat.Dense, folds *crossval.Folds, opt Option
 		return nil, errors.New("predict: no measures")
 	}
 	n, p := measures.Dims()
+	if err := opt.checkScalers(p); err != nil {
+		return nil, err
+	}
 	if err := errors.Join(checkFinite("measure", measures, opt.FillMissing), checkConfounds(confounds, n)); err != nil {
 		return nil, err
 	}
@@ -112,7 +115,7 @@ func newDesign(measures, confounds *mat.Dense, folds *crossval.Folds, opt Option
 	if d.source, err = d.newSources(measures, confounds); err != nil {
 		return nil, err
 	}
-	d.rows = p > d.smallestTraining()
+	d.rows = p > d.smallestTraining() || d.opt.scaled()
 	d.plan()
 	return d, d.prepare()
 }
@@ -166,8 +169,14 @@ func (d *Design) newSources(measures, confounds *mat.Dense) (*sources, error) {
 	}
 	columns := standardColumns(measures)
 	s := &sources{k: basis.Cols, p: p, confound: kept, markerOf: make([]int, p), scale: columns.scale, grain: columns.grain}
+	if d.opt.scaled() {
+		s.scalers = d.opt.Scalers
+	}
 	markers := 0
 	for j := range p {
+		if s.scalers != nil && s.scalers[j] != nil {
+			s.scale[j] = 1 // learnt scales have their own unit
+		}
 		missing := 0
 		for i := range n {
 			if math.IsNaN(measures.At(i, j)) {

@@ -52,7 +52,7 @@ func TestFitAgainstTextbook(t *testing.T) {
 				if err != nil {
 					t.Fatal(err)
 				}
-				book := textbook{q.measures, q.confounds, q.penalties}
+				book := textbook{measures: q.measures, confounds: q.confounds, penalties: q.penalties}
 				at := 0
 				for r := range q.folds.Repeats {
 					got := fit.Repeats[r]

@@ -102,6 +102,11 @@ type Options struct {
 	// the mean of the people of the training set who have one, in each
 	// training set anew. Otherwise NaN is refused.
 	FillMissing bool
+	// Scalers is nil or holds a Scaler, or nil, for each measure: its scale is
+	// learnt in each training set anew, outer and inner, before missing values
+	// are filled and confounds are taken out. Work then goes by the rows of
+	// people, at a higher cost.
+	Scalers []Scaler
 	// Workers is how many goroutines compute; 0 means one a processor. Results
 	// do not depend on it.
 	Workers int
@@ -135,6 +140,7 @@ func (o Options) Validate() error {
 // filled returns a copy with the defaults in place of zeros.
 func (o Options) filled() Options {
 	o.Penalties = slices.Clone(o.Penalties)
+	o.Scalers = slices.Clone(o.Scalers)
 	if o.Confidence == 0 {
 		o.Confidence = 0.95
 	}

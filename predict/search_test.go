@@ -24,7 +24,7 @@ func TestTies(t *testing.T) {
 	}
 	y := mat.Col(nil, 0, q.traits)
 	errorAt := func(penalty float64) float64 {
-		return textbook{q.measures, q.confounds, []float64{penalty}}.fit(y, &q.folds.Repeats[0]).mse[0]
+		return textbook{measures: q.measures, confounds: q.confounds, penalties: []float64{penalty}}.fit(y, &q.folds.Repeats[0]).mse[0]
 	}
 	best, least := 1.0, math.Inf(1)
 	for l := -2.0; l < 5; l += 0.05 {
@@ -187,7 +187,7 @@ func TestCloseEigenvalues(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			book := textbook{q.measures, q.confounds, q.penalties}
+			book := textbook{measures: q.measures, confounds: q.confounds, penalties: q.penalties}
 			for trait := range 2 {
 				want := book.fit(mat.Col(nil, trait, q.traits), &q.folds.Repeats[0])
 				for i := range 80 {

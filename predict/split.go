@@ -24,6 +24,7 @@ type sources struct {
 	k, p     int       // basis columns (the constant first), measures
 	confound []int     // basis column j+1 is of confound[j]
 	markerOf []int     // marker column of a measure, counted from 0 behind the measures; -1 for none
+	scalers  []Scaler  // per measure, nil when none has one
 	scale    []float64 // per measure, its deviation over all people, the unit here
 	grain    []float64 // per measure, the deviation that the rounding of its values alone can make
 }
@@ -54,6 +55,7 @@ func (s *sources) measure(sp *split) (*geometry, error) {
 	g.inverse = invertSquare(triangle)
 
 	before := s.fillActive(g, sp)
+	s.rescale(g, sp, before)
 	g.coefficient = regressOut(g.x, g.c, triangle, tau)
 	multiplyTo(g.held, -1, plain, g.cHeld, plain, g.coefficient, 1)
 	g.standardise(before)

@@ -15,6 +15,7 @@ import (
 type textbook struct {
 	measures, confounds *mat.Dense
 	penalties           []float64
+	scalers             []Scaler // nil: measures as they are
 }
 
 type textbookFit struct {
@@ -32,6 +33,14 @@ type textbookSplit struct {
 	weights          [][]float64 // per penalty, per training deviation
 	patterns         [][]float64
 	sd               []float64
+}
+
+func at(values []float64, rows []int) []float64 {
+	out := make([]float64, len(rows))
+	for i, r := range rows {
+		out[i] = values[r]
+	}
+	return out
 }
 
 func (b textbook) split(y []float64, train, held []int) textbookSplit {
@@ -75,6 +84,31 @@ func (b textbook) split(y []float64, train, held []int) textbookSplit {
 	}
 	ca, cb := design(train), design(held)
 	xa, xb := take(train, fill), take(held, fill)
+	for j, scaler := range b.scalers {
+		if scaler == nil {
+			continue
+		}
+		raw := mat.Col(nil, j, b.measures)
+		onTraining, onHeld := scaler(at(raw, train), at(raw, held))
+		sum, count := 0.0, 0.0
+		for _, v := range onTraining {
+			if !math.IsNaN(v) {
+				sum, count = sum+v, count+1
+			}
+		}
+		for i, v := range onTraining {
+			if math.IsNaN(v) {
+				v = sum / count
+			}
+			xa.Set(i, j, v)
+		}
+		for i, v := range onHeld {
+			if math.IsNaN(v) {
+				v = sum / count
+			}
+			xb.Set(i, j, v)
+		}
+	}
 	ya := mat.NewDense(len(train), 1, nil)
 	for i, r := range train {
 		ya.Set(i, 0, y[r])

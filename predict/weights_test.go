@@ -22,7 +22,7 @@ func TestWeightsAreMeansOfFits(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	book := textbook{q.measures, q.confounds, q.penalties}
+	book := textbook{measures: q.measures, confounds: q.confounds, penalties: q.penalties}
 	for trait := range s.traits {
 		var fits, patterns, deviations [][]float64
 		for r := range q.folds.Repeats {
