@@ -40,8 +40,8 @@ type PeopleGroup struct {
 type Exclusion struct {
 	Analysis string `name:"analysis" description:"Part of the study that went on without the person, for instance predict or heritability."`
 	Variable string `name:"variable" description:"Trait, measure or confound whose analysis leaves the person out; empty when the person is left out of the whole part."`
-	Person   string `name:"person" description:"Identifier of the person, as in the input tables."`
-	Reason   string `name:"reason" description:"Why the person is left out, naming the missing value or the rule."`
+	Person   string `name:"person" description:"Identifier of the person, as in the input tables; empty when the variable as a whole is left out of the analysis."`
+	Reason   string `name:"reason" description:"Why the person or the variable is left out, naming the missing value or the rule."`
 }
 
 // Warning is a row of warnings.csv.

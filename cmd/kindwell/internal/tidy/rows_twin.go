@@ -37,7 +37,7 @@ type Heritability struct {
 	SingleTwins     int     `name:"n_single_twins" unit:"people" description:"Number of twins whose co-twin lacks the variable or a covariate; they stay in and inform means and variances."`
 	DetectableA2    float64 `name:"detectable_a2" unit:"1" minimum:"0" maximum:"1" description:"Smallest a2 that so many complete twin pairs show with a power of 0.8 in the one-sided test of A given C at .05, when there is no C; empty without pairs of both kinds."`
 	DetectableC2    float64 `name:"detectable_c2" unit:"1" unfilled:"true" description:"Smallest c2 that a study of these families would find with a power of 0.8."`
-	Flags           string  `name:"flags" description:"Words, separated by semicolons, for what a reader should know before using the row, for instance suggests_dominance, same_in_twins or not_converged."`
+	Flags           string  `name:"flags" description:"Words, separated by semicolons, for what a reader should know before using the row, for instance suggests_dominance (identical twins more than twice as alike as fraternal ones), same_in_twins (equal in nearly all pairs, so not fitted), two_values, not_fitted or not_converged."`
 }
 
 // VarianceComponent is a row of variance_components.csv.
@@ -81,7 +81,7 @@ type VarianceTest struct {
 	Weight1           float64     `name:"weight_1" unit:"1" minimum:"0" maximum:"1" description:"Weight of the chi-square distribution with 1 degree of freedom in that mixture."`
 	Weight2           float64     `name:"weight_2" unit:"1" minimum:"0" maximum:"1" description:"Weight of the chi-square distribution with 2 degrees of freedom in that mixture."`
 	PMixture          float64     `name:"p_mixture" unit:"1" minimum:"0" maximum:"1" description:"p value of the bounded likelihood ratio from the mixture of chi-square distributions (Self and Liang 1987); conservative when another component is at its bound too."`
-	Method            string      `name:"method" description:"How p was made: signed_root (one-sided, unbounded models), mixture (bounded models) or chi_square (no variance at a bound under the null)."`
+	Method            string      `name:"method" description:"How p was made: signed_root (one-sided, normal distribution, unbounded models) or mixture (bounded models, the mixture of chi-square distributions that the weights give)."`
 	P                 float64     `name:"p" unit:"1" minimum:"0" maximum:"1" description:"p value of the test by the stated method: probability of a statistic at least as large when the null model is true."`
 	PPermutation      float64     `name:"p_permutation" unit:"1" minimum:"0" maximum:"1" unfilled:"true" description:"p value of the signed root by exchange of zygosity labels among twin sets with the same sexes and relatives."`
 	PFWER             float64     `name:"p_fwer" unit:"1" minimum:"0" maximum:"1" unfilled:"true" description:"p_permutation corrected for all variables tested on the same people, by the largest statistic of each labelling."`

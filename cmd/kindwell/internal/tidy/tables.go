@@ -52,7 +52,7 @@ var declarations = sync.OnceValue(func() []*Table {
 		declare[VarianceTest]("variance_tests", "Variance tests", "One row is a comparison of two variance models of a variable."),
 		declare[TwinCorrelation]("twin_correlations", "Twin correlations", "One row is a variable and a relation: how alike such relatives are."),
 		declare[FixedEffect]("fixed_effects", "Fixed effects", "One row is a term of the mean of a variable in a variance model."),
-		declare[Exclusion]("exclusions", "Exclusions", "One row is a person left out of an analysis, with the reason."),
+		declare[Exclusion]("exclusions", "Exclusions", "One row is a person, or a whole variable, left out of an analysis, with the reason."),
 		declare[Warning]("warnings", "Warnings", "One row is a warning: something the reader of the results should know."),
 	}
 })
