@@ -14,6 +14,7 @@ import (
 	"kindwell/cmd/kindwell/internal/study/config"
 	"kindwell/cmd/kindwell/internal/tidy"
 	"kindwell/crossval"
+	"kindwell/features"
 	"kindwell/predict"
 )
 
@@ -180,6 +181,7 @@ func (p *Plan) fitSet(ctx context.Context, g *group, set measureSet, folds *cros
 	about := set.name
 	d, err := predict.NewDesign(p.measureMatrix(g, set), confounds.matrix, folds, predict.Options{
 		Penalties: penalties(p.Study.Predict.Penalties), Metric: metric, Confidence: p.Study.Confidence, Workers: opt.Workers,
+		Scalers: p.scalers(set),
 	})
 	if err != nil {
 		return f, p.designTrouble(err, g, set, confounds)
@@ -253,6 +255,33 @@ func (p *Plan) measureMatrix(g *group, set measureSet) *mat.Dense {
 		m.SetCol(k, pick(p.measures[j].values, g.rows))
 	}
 	return m
+}
+
+// scalers learn normal scores of ranks in every training set, for the measures
+// of a set that are on that scale; nil when none is.
+func (p *Plan) scalers(set measureSet) []predict.Scaler {
+	scalers := make([]predict.Scaler, len(set.measures))
+	any := false
+	for k, j := range set.measures {
+		if p.measures[j].scale == config.ScaleRankNormal {
+			scalers[k], any = rankScaler, true
+		}
+	}
+	if !any {
+		return nil
+	}
+	return scalers
+}
+
+// rankScaler scores the ranks of the training people, and puts the held-out
+// people between them. Without two different training values there is no
+// scale, and the measure is left as it is, to get weight 0.
+func rankScaler(training, held []float64) (trainingScaled, heldScaled []float64) {
+	scale, err := features.FitRankNormal(training)
+	if err != nil {
+		return training, held
+	}
+	return scale.Apply(training), scale.Apply(held)
 }
 
 // compositions lists, by place in the set, the parts of each whole that is in
