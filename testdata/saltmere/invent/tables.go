@@ -14,7 +14,7 @@ const Seed = 20260165
 // Chances that something is missing, in thousandths.
 const (
 	oneSession   = 50 // a person came once only
-	noAnswer     = 15 // a questionnaire was not filled in
+	noSheet      = 25 // a sheet of questionnaires, mood or sleep, was not filled in
 	noSleepTable = 12 // a person has no row in sleep.csv
 	noMotion     = 8
 )
@@ -28,7 +28,7 @@ func Tables(seed uint64, times int) map[string][]byte {
 	all := c.drivesOf(seed)
 	people := newTable("person", "family", "mother", "father", "twin_set", "zygosity", "age", "sex", "motion")
 	mood := newTable("person", "wellbeing", "fatigue", "sociability")
-	asleep := newTable("person", "sleep_quality", "vigilance")
+	sleeping := newTable("person", "sleep_quality", "vigilance")
 	dynamics := newTable(dynamicsHeader()...)
 	for j := range c.people {
 		p := &c.people[j]
@@ -40,17 +40,14 @@ func Tables(seed uint64, times int) map[string][]byte {
 		decades := ageInDecades(float64(p.tenths) / 10)
 		motion := math.Round(motionOf(&all[j], decades, p.male)*1000) / 1000
 		people.row(c.peopleRow(p, motion, chance(noMotion))...)
-		once, answers, slept := chance(oneSession), [5]bool{}, !chance(noSleepTable)
-		for i := range answers {
-			answers[i] = !chance(noAnswer)
-		}
+		once, filledMood, filledSleep, hasSleep := chance(oneSession), !chance(noSheet), !chance(noSheet), !chance(noSleepTable)
 		if !p.recorded {
 			continue
 		}
 		s := scoresOf(&all[j], decades, motion, p.male)
-		mood.row(p.id, answer(s.wellbeing, answers[0]), answer(s.fatigue, answers[1]), answer(s.sociability, answers[2]))
-		if slept {
-			asleep.row(p.id, answer(s.sleepQuality, answers[3]), answer(s.vigilance, answers[4]))
+		mood.row(p.id, answer(s.wellbeing, filledMood), answer(s.fatigue, filledMood), answer(s.sociability, filledMood))
+		if hasSleep {
+			sleeping.row(p.id, answer(s.sleepQuality, filledSleep), answer(s.vigilance, filledSleep))
 		}
 		for session := range 2 {
 			if session == 1 && once {
@@ -60,7 +57,7 @@ func Tables(seed uint64, times int) map[string][]byte {
 			dynamics.row(dynamicsRow(p.id, session+1, newChain(&all[j], decades, draw).run(draw))...)
 		}
 	}
-	return map[string][]byte{"people.csv": people.Bytes(), "dynamics.csv": dynamics.Bytes(), "mood.csv": mood.Bytes(), "sleep.csv": asleep.Bytes()}
+	return map[string][]byte{"people.csv": people.Bytes(), "dynamics.csv": dynamics.Bytes(), "mood.csv": mood.Bytes(), "sleep.csv": sleeping.Bytes()}
 }
 
 func (c *cohort) peopleRow(p *person, motion float64, lostMotion bool) []string {
