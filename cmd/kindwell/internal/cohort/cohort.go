@@ -2,6 +2,7 @@ package cohort
 
 import (
 	"kindwell/twin"
+	"slices"
 )
 
 // Inputs says where the tables of a study are and what their columns mean.
@@ -203,14 +204,14 @@ func (l *loader) personColumn(g *grid, given, key string, faults *collector) str
 	const ours = "person"
 	theirs := l.in.People.Columns[ours]
 	switch {
-	case given != "" && !contains(g.names, given):
+	case given != "" && !slices.Contains(g.names, given):
 		l.require(g, given, key+".columns", faults)
 		return ""
 	case given != "":
 		return given
-	case contains(g.names, ours):
+	case slices.Contains(g.names, ours):
 		return ours
-	case theirs != "" && contains(g.names, theirs):
+	case theirs != "" && slices.Contains(g.names, theirs):
 		return theirs
 	}
 	faults.add(g.noColumn(ours, "name it, or map it ("+key+": {columns: {person: NAME}})"))
@@ -219,7 +220,7 @@ func (l *loader) personColumn(g *grid, given, key string, faults *collector) str
 
 // require is a fault when a column that the study names is not there.
 func (l *loader) require(g *grid, name, key string, faults *collector) {
-	if name != "" && !contains(g.names, name) {
+	if name != "" && !slices.Contains(g.names, name) {
 		faults.add(g.noColumn(name, "the study names it under "+key))
 	}
 }
@@ -227,13 +228,4 @@ func (l *loader) require(g *grid, name, key string, faults *collector) {
 // noColumn is the fault of a missing column.
 func (g *grid) noColumn(name, hint string) *Fault {
 	return &Fault{File: g.file, Row: g.header, Message: "there is no column " + quote(name) + "; " + orNearest(name, g.names) + "; " + hint}
-}
-
-func contains(names []string, name string) bool {
-	for _, n := range names {
-		if n == name {
-			return true
-		}
-	}
-	return false
 }

@@ -125,14 +125,14 @@ func (l *loader) readFoldList(c *Cohort, in FoldsInput, file string, keys ...str
 		check: func(g *grid, faults *collector) bool {
 			person = l.personColumn(g, in.Person, "folds", faults)
 			for _, key := range keys {
-				if !contains(g.names, key) {
+				if !slices.Contains(g.names, key) {
 					faults.add(g.noColumn(key, "a table of folds has repeat, fold (and inner_fold) and person"))
 				}
 			}
 			return faults.empty()
 		},
 		role: func(name string) Role {
-			if name == person || name == groupColumn || contains(keys, name) {
+			if name == person || name == groupColumn || slices.Contains(keys, name) {
 				return ID
 			}
 			return Skip
@@ -309,7 +309,7 @@ func (f *FoldTable) assign(list *foldList, path foldPath, people []int, held []b
 // personColumn is the name of the column of ids: the one that is no key.
 func (f *foldList) personColumn() string {
 	for _, name := range f.Names() {
-		if f.Has(name) && !contains([]string{"repeat", "fold", "inner_fold", "people_group"}, name) {
+		if f.Has(name) && !slices.Contains([]string{"repeat", "fold", "inner_fold", "people_group"}, name) {
 			return name
 		}
 	}

@@ -98,7 +98,7 @@ func (l *loader) checkPeopleColumns(p *peopleTable, g *grid, faults *collector) 
 	}
 	sort.Strings(named)
 	for _, role := range named {
-		if in.Columns[role] != "" && !contains(peopleRoles(), role) {
+		if in.Columns[role] != "" && !slices.Contains(peopleRoles(), role) {
 			faults.add(&Fault{File: g.file, Row: g.header, Message: fmt.Sprintf("people.columns names %s, which is no column of ours; %s", quote(role), orNearest(role, peopleRoles()))})
 		}
 	}
@@ -106,16 +106,16 @@ func (l *loader) checkPeopleColumns(p *peopleTable, g *grid, faults *collector) 
 		name := in.Columns[role]
 		mapped := name != "" && name != role
 		switch {
-		case mapped && !contains(g.names, name):
+		case mapped && !slices.Contains(g.names, name):
 			faults.add(g.noColumn(name, "the study names it under people.columns, "+role))
 			continue
-		case mapped && contains(g.names, role):
+		case mapped && slices.Contains(g.names, role):
 			faults.add(&Fault{File: g.file, Row: g.header, Column: role, Message: fmt.Sprintf("is in the table although people.columns takes %s from %s; rename it, or drop the entry", role, quote(name))})
 			continue
 		case !mapped:
 			name = role
 		}
-		if !contains(g.names, name) {
+		if !slices.Contains(g.names, name) {
 			if role == personRole {
 				faults.add(g.noColumn(role, "name it, or map it (people: {columns: {person: NAME}})"))
 			}
@@ -174,7 +174,7 @@ func (l *loader) warnNoKin(p *peopleTable) {
 func (l *loader) peopleColumnRole(p *peopleTable, name string) Role {
 	role := p.role[name]
 	switch {
-	case name == l.in.People.Session, role == personRole, contains(idRoles(), role):
+	case name == l.in.People.Session, role == personRole, slices.Contains(idRoles(), role):
 		return ID
 	case role == zygosityRole, role == sexRole:
 		return Category
@@ -307,7 +307,7 @@ func (l *loader) peopleVariables(p *peopleTable, faults *collector) {
 		if role == personRole || column == l.in.People.Session {
 			continue
 		}
-		isID := contains(idRoles(), role)
+		isID := slices.Contains(idRoles(), role)
 		l.cohort.Available = append(l.cohort.Available, name)
 		if isID && !l.use[name] || !l.wanted(name) {
 			continue

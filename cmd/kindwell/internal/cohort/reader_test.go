@@ -230,6 +230,23 @@ func TestReadTable(t *testing.T) {
 	}
 }
 
+// A cell after a line break inside its row is further down than the row.
+func TestFaultInsideARowOfSeveralLines(t *testing.T) {
+	table, faults := tableOf([]byte("person,notes,age\nA,\"one\ntwo\",3\nB,x,4\n"), ',', typing{role: func(string) Role { return Auto }})
+	if !faults.empty() {
+		t.Fatal(faults.err())
+	}
+	for _, c := range []struct {
+		row    int
+		column string
+		want   int
+	}{{0, "person", 2}, {0, "notes", 2}, {0, "age", 3}, {0, "", 2}, {1, "age", 4}} {
+		if got := table.Fault(c.row, c.column, "", "is odd").Row; got != c.want {
+			t.Errorf("row %d, column %q is on line %d, want %d", c.row, c.column, got, c.want)
+		}
+	}
+}
+
 func TestReadNames(t *testing.T) {
 	folder := folderWith(t, map[string]string{"a.csv": "\ufeffperson, age\nA,x,too long\n", "b.csv": "a,a\n", "c.csv": "\n"})
 	names, err := ReadNames(folder, "a.csv")

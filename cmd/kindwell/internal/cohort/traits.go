@@ -3,6 +3,7 @@ package cohort
 import (
 	"fmt"
 	"math"
+	"slices"
 )
 
 // loadTraits reads a table with one row a person, or person and session, into
@@ -63,7 +64,7 @@ func (l *loader) loadTraits(in TableInput) {
 
 // isIDRole tells whether a column is one by which people tables say who is
 // related; other tables may repeat it, and it is not looked at there.
-func isIDRole(name string) bool { return name == personRole || contains(idRoles(), name) }
+func isIDRole(name string) bool { return name == personRole || slices.Contains(idRoles(), name) }
 
 // refuseRepeatedNames keeps the names of variables and measures unique over all
 // tables.
