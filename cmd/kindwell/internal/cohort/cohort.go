@@ -1,8 +1,9 @@
 package cohort
 
 import (
-	"kindwell/twin"
 	"slices"
+
+	"kindwell/twin"
 )
 
 // Inputs says where the tables of a study are and what their columns mean.
