@@ -92,10 +92,22 @@ For research only; not for diagnosis, selection or any decision about a person.`
 func asUsage(check cobra.PositionalArgs) cobra.PositionalArgs {
 	return func(cmd *cobra.Command, args []string) error {
 		if err := check(cmd, args); err != nil {
+			if near := suggestions(cmd, args); len(near) > 0 {
+				return usageError{fmt.Errorf("%w; did you mean %q?", err, near[0])}
+			}
 			return usageError{fmt.Errorf("%w; see '%s --help'", err, cmd.CommandPath())}
 		}
 		return nil
 	}
+}
+
+// suggestions are the commands that a mistyped one may mean.
+func suggestions(cmd *cobra.Command, args []string) []string {
+	if cmd.HasParent() || len(args) == 0 {
+		return nil
+	}
+	cmd.SuggestionsMinimumDistance = 2
+	return cmd.SuggestionsFor(args[0])
 }
 
 // release is the version that the next tag will carry.

@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"io"
 	"runtime"
@@ -12,6 +13,7 @@ import (
 
 	"kindwell/cmd/kindwell/internal/report"
 	"kindwell/cmd/kindwell/internal/study"
+	"kindwell/cmd/kindwell/internal/tidy"
 )
 
 // runFlags are the options that run and demo share.
@@ -73,6 +75,9 @@ func runStudy(ctx context.Context, path string, flags runFlags, stdout, stderr i
 		return err
 	}
 	folder, err := plan.Reserve(flags.overwrite)
+	if errors.Is(err, tidy.ErrNotEmpty) {
+		return fmt.Errorf("%w (--overwrite)", err)
+	}
 	if err != nil {
 		return err
 	}

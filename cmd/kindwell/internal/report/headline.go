@@ -160,8 +160,8 @@ func chance(p float64) string {
 	return fmt.Sprintf("%.2f", p)
 }
 
-// align writes a table with its first columns to the left and the others to
-// the right, two spaces apart.
+// align writes a table, two spaces between columns: the first columns, and one
+// named flags, to the left and the others to the right.
 func align(b *strings.Builder, table [][]string, left int) {
 	widths := make([]int, len(table[0]))
 	for _, row := range table {
@@ -169,13 +169,12 @@ func align(b *strings.Builder, table [][]string, left int) {
 			widths[j] = max(widths[j], len([]rune(cell)))
 		}
 	}
-	last := len(widths) - 1
 	for _, row := range table {
 		var line strings.Builder
 		for j, cell := range row {
 			pad := strings.Repeat(" ", widths[j]-len([]rune(cell)))
 			switch {
-			case j < left || j == last && widths[j] > 8:
+			case j < left || table[0][j] == "flags":
 				line.WriteString(cell + pad)
 			default:
 				line.WriteString(pad + cell)

@@ -10,8 +10,18 @@ import (
 
 // addCorrelations makes the rows of twin_correlations.csv of one variable, and
 // puts those of twins and siblings into its headline. Relations of too few
-// families have their counts and no correlation.
+// families have their counts and no correlation. rows are all people with the
+// variable; the sample lacks those among them whose zygosity is unknown.
 func (p *Plan) addCorrelations(v *variable, rows []int, sample *twin.Sample, d *divided) {
+	if sample.People() < len(rows) {
+		covariates := designOf(p.Cohort, v.covariates, rows)
+		whole, err := twin.NewSample(p.Cohort.Pedigree, rows, v.valuesOf(rows), covariates.matrix, covariates.names)
+		if err != nil {
+			d.warnings = append(d.warnings, tidy.Warning{Analysis: "heritability", About: v.name, Message: "no correlations of relatives: " + plain(err)})
+			return
+		}
+		sample = whole
+	}
 	for _, count := range p.Cohort.Pedigree.PairCounts(rows) {
 		if count.Relation == twin.OtherKin {
 			continue

@@ -95,7 +95,8 @@ func adjustVariances(r *Results) {
 // divide divides the variance of one variable.
 func (p *Plan) divide(v *variable) (divided, error) {
 	var d divided
-	rows := p.variableRows(v, &d)
+	complete := p.variableRows(v, &d)
+	rows := p.withKnownZygosity(v, complete, &d)
 	counts := p.countPairs(rows)
 	d.headline = p.blankHeadline(v, rows, counts)
 	refuse := func(flag, reason string) (divided, error) {
@@ -106,10 +107,7 @@ func (p *Plan) divide(v *variable) (divided, error) {
 	if zygosity := sameInTwins(v.values, counts); zygosity != "" {
 		return refuse(flagSameInTwins, fmt.Sprintf("not fitted: equal in both twins of 95 %% or more of the %s pairs, so that the likelihood has no maximum", zygosity))
 	}
-	y := pick(v.values, rows)
-	if v.measure != nil {
-		y = v.measure.ranked(rows)
-	}
+	y := v.valuesOf(rows)
 	if distinct(y) == 2 {
 		return refuse(flagTwoValues, "not fitted: two values only; a variance model is for a continuous variable")
 	}
@@ -119,7 +117,7 @@ func (p *Plan) divide(v *variable) (divided, error) {
 		return refuse(flagNotFitted, "not fitted: "+plain(err))
 	}
 	fits := p.fitModels(v, sample, &d)
-	p.addCorrelations(v, rows, sample, &d)
+	p.addCorrelations(v, complete, sample, &d)
 	p.addTests(v, sample, fits, &d)
 	return d, p.fillHeadline(sample, fits, &d)
 }
@@ -159,6 +157,33 @@ func (p *Plan) variableRows(v *variable, d *divided) []int {
 		})
 	}
 	return rows
+}
+
+// withKnownZygosity leaves out twins of unknown zygosity whose co-twin is
+// there: a variance model needs to know how many genes a pair shares. The
+// exclusions say so.
+func (p *Plan) withKnownZygosity(v *variable, rows []int, d *divided) []int {
+	unknown := map[int]bool{}
+	for pair := range p.Cohort.Pedigree.Pairs(rows) {
+		if pair.Relation == twin.UnknownZygosity {
+			unknown[pair.First], unknown[pair.Second] = true, true
+		}
+	}
+	if len(unknown) == 0 {
+		return rows
+	}
+	var known []int
+	for _, row := range rows {
+		if !unknown[row] {
+			known = append(known, row)
+			continue
+		}
+		d.exclusions = append(d.exclusions, tidy.Exclusion{
+			Analysis: "heritability", Variable: v.name, Person: p.Cohort.People[row],
+			Reason: "twin of unknown zygosity: in the twin correlations, left out of variance models",
+		})
+	}
+	return known
 }
 
 // pairCounts are the pairs that are complete in a variable.

@@ -1,7 +1,10 @@
 package study
 
 import (
+	"errors"
 	"fmt"
+	"io/fs"
+	"os"
 	"slices"
 
 	"kindwell/cmd/kindwell/internal/cohort"
@@ -44,17 +47,44 @@ type variable struct {
 	covariates columns
 }
 
+// valuesOf returns the values of some people, with ranks taken among them when
+// the scale asks for it.
+func (v *variable) valuesOf(rows []int) []float64 {
+	if v.measure != nil {
+		return v.measure.ranked(rows)
+	}
+	return pick(v.values, rows)
+}
+
 // Open reads a study file and its tables and resolves every name.
 func Open(path string) (*Plan, error) {
 	s, err := config.Load(path)
 	if err != nil {
-		return nil, err
+		return nil, unread(path, err)
 	}
 	c, err := cohort.Load(inputs(s))
 	if err != nil {
 		return nil, err
 	}
 	return newPlan(s, c)
+}
+
+// unread says why a study file could not be read at all; other errors are
+// faults in it already.
+func unread(path string, err error) error {
+	message := ""
+	switch {
+	case errors.Is(err, fs.ErrNotExist):
+		message = "there is no such study file; kindwell init writes one from a folder of tables"
+	case errors.Is(err, fs.ErrPermission):
+		message = "the study file may not be read"
+	default:
+		if info, statErr := os.Stat(path); statErr != nil || !info.IsDir() {
+			return err
+		}
+		message = "is a folder; name the study file in it"
+	}
+	return &cohort.Fault{File: path, Message: message}
 }
 
 // newPlan resolves the names of a study against its tables.

@@ -120,6 +120,10 @@ func (f *Folder) free(what string) string {
 	}
 }
 
+// ErrNotEmpty is in the error of a results folder that holds something, and
+// may not be overwritten.
+var ErrNotEmpty = errors.New("exists and is not empty")
+
 // checkPlace refuses a place that must not be replaced; see Create.
 func (f *Folder) checkPlace() error {
 	info, err := os.Stat(f.dir)
@@ -144,7 +148,7 @@ func (f *Folder) checkPlace() error {
 	case len(entries) == 0:
 		return nil
 	case !f.overwrite:
-		return fmt.Errorf("%s exists and is not empty; name another folder, or allow its results to be overwritten", f.dir)
+		return fmt.Errorf("%s %w; name another folder, or allow its results to be overwritten", f.dir, ErrNotEmpty)
 	}
 	stranger, err := firstStranger(f.dir)
 	if err != nil {
