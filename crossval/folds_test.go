@@ -11,7 +11,6 @@ import (
 	"pgregory.net/rapid"
 
 	"kindwell/crossval"
-	"kindwell/internal/stream"
 )
 
 // drawFamilies draws people in families of 1 to 8 under labels of any value,
@@ -341,38 +340,75 @@ func TestLevelThatCannotBeKept(t *testing.T) {
 }
 
 func TestStrataAreBalanced(t *testing.T) {
-	s := stream.New(3, "test strata")
-	n := 200
-	family := make([]int, n)
-	class := make([]int, n)
-	for i := range family {
-		family[i] = i
-		if s.IntN(10) == 0 {
-			class[i] = 1
+	for _, c := range []struct{ ones, zeros, outer, inner int }{
+		{20, 180, 10, 5}, {23, 180, 10, 5}, {6, 6, 5, 2}, {12, 12, 2, 5}, {40, 40, 2, 10},
+	} {
+		n := c.ones + c.zeros
+		family := make([]int, n)
+		class := make([]int, n)
+		for i := range family {
+			family[i] = i
+			if i < c.ones {
+				class[i] = 1
+			}
+		}
+		folds, err := crossval.BalancedFolds(family, crossval.FoldOptions{Outer: c.outer, Inner: c.inner, Repeats: 10, Seed: 1, Strata: class})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := folds.Validate(family); err != nil {
+			t.Fatal(err)
+		}
+		even := func(what string, size []int, most int) {
+			if spread := slices.Max(size) - slices.Min(size); spread > most {
+				t.Errorf("%d ones and %d zeros: %s %v", c.ones, c.zeros, what, size)
+			}
+		}
+		for _, p := range folds.Repeats {
+			in, people := make([]int, c.outer), make([]int, c.outer)
+			inCell, allCell := make([][]int, c.outer), make([][]int, c.outer)
+			cell := make([]int, c.inner)
+			for o := range inCell {
+				inCell[o], allCell[o] = make([]int, c.inner), make([]int, c.inner)
+			}
+			for i, o := range p.Outer {
+				in[o] += class[i]
+				people[o]++
+				inCell[o][p.Cell[i]] += class[i]
+				allCell[o][p.Cell[i]]++
+				cell[p.Cell[i]] += class[i]
+			}
+			even("ones of outer folds", in, 1)
+			even("people of outer folds", people, 1)
+			for o := range inCell {
+				even("ones of cells in a fold", inCell[o], 1)
+				even("people of cells in a fold", allCell[o], 1)
+			}
+			even("ones of cells over all folds", cell, 2)
 		}
 	}
-	class[0] = 1
-	ones := 0
-	for _, c := range class {
-		ones += c
-	}
-	folds, err := crossval.BalancedFolds(family, crossval.FoldOptions{Outer: 10, Inner: 5, Repeats: 3, Seed: 1, Strata: class})
-	if err != nil {
-		t.Fatal(err)
-	}
-	if err := folds.Validate(family); err != nil {
-		t.Fatal(err)
-	}
-	for _, p := range folds.Repeats {
-		in := make([]int, 10)
-		people := make([]int, 10)
-		for i, o := range p.Outer {
-			in[o] += class[i]
-			people[o]++
+}
+
+// A class whose people are nearly all in one family is missing from the fold
+// of the largest family: it would take a family that fits better elsewhere.
+func TestStratumMissingFromAFold(t *testing.T) {
+	var family, class []int
+	add := func(label, zeros, ones int) {
+		for i := range zeros + ones {
+			family = append(family, label)
+			class = append(class, min(1, max(0, i-zeros+1)))
 		}
-		if slices.Max(in)-slices.Min(in) > 1 || slices.Max(people)-slices.Min(people) > 2 {
-			t.Errorf("%d ones fall into folds as %v of %v", ones, in, people)
-		}
+	}
+	add(1, 60, 0)
+	add(2, 0, 38)
+	add(3, 10, 1)
+	add(4, 10, 1)
+	add(5, 1, 0)
+	add(6, 1, 0)
+	_, err := crossval.BalancedFolds(family, crossval.FoldOptions{Outer: 2, Inner: 2, Strata: class})
+	var missing *crossval.LevelError
+	if !errors.As(err, &missing) || missing.Column != -1 || missing.Level != 1 || missing.Families != 3 || missing.Tries != 100 {
+		t.Errorf("got %v", err)
 	}
 }
 

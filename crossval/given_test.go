@@ -162,6 +162,7 @@ func TestGivenOuterFoldsSayWhatIsWrong(t *testing.T) {
 		want  crossval.FoldError
 	}{
 		{"gap", []int{0, 0, 2, 2, 0, 2, 0, 2}, crossval.FoldError{Fault: crossval.FoldEmpty, Outer: 1, Inner: -1, Person: -1, Other: -1}},
+		{"gap at the start", []int{1, 1, 2, 2, 1, 2, 1, 2}, crossval.FoldError{Fault: crossval.FoldEmpty, Outer: 0, Inner: -1, Person: -1, Other: -1}},
 		{"one fold", make([]int, 8), crossval.FoldError{Fault: crossval.FoldsTooFew, Outer: 0, Inner: -1, Person: -1, Other: -1}},
 		{"negative number", []int{0, 0, 1, 1, 0, 1, -3, 1}, crossval.FoldError{Fault: crossval.PersonMissing, Outer: -3, Inner: -1, Person: 6, Other: -1, Family: 50}},
 	} {

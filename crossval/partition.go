@@ -149,9 +149,8 @@ func dealOuter(m *makeup, order []int, folds, limit int) []int {
 
 // dealCells puts the families of every outer fold, in the order given, into
 // cells: the least crowded one inside the fold, then the emptiest inside it,
-// then one that fewer than two other folds reach, then the least crowded and
-// the emptiest over all folds, then the first. Folds go in the order of their
-// first family.
+// then one that fewer than two other folds reach, then the least crowded over
+// all folds, then the first. Folds go in the order of their first family.
 //
 // Inner fold i of outer fold o is cell i outside o, never empty when every
 // cell is reached by two folds. That is so when the sum of min(families,
@@ -183,10 +182,7 @@ func dealCells(m *makeup, order, outer []int, folds, cells int) []int {
 			if x, y := min(reached[a], 2), min(reached[b], 2); x != y {
 				return x < y
 			}
-			if x, y := all.crowding(f, a), all.crowding(f, b); x != y {
-				return x < y
-			}
-			return all.people[a] < all.people[b]
+			return all.crowding(f, a) < all.crowding(f, b)
 		}
 		for _, f := range byFold[o] {
 			best := 0
