@@ -56,11 +56,9 @@ func Residuals(traits, confounds *mat.Dense) (*mat.Dense, error) {
 	basis, _ := confoundBasis(confounds, n)
 	left := standardColumns(traits)
 	for j, empty := range residualise(left.values, basis) {
-		scale := left.scale[j]
-		if empty {
-			scale = 0
+		if !empty { // otherwise the column is 0
+			scaleColumn(left.values, j, left.scale[j])
 		}
-		scaleColumn(left.values, j, scale)
 	}
 	return mat.NewDense(n, t, left.values.Data), nil
 }
@@ -300,7 +298,9 @@ func residualise(a, basis blas64.General) (empty []bool) {
 	empty = make([]bool, a.Cols)
 	for j, after := range squares(a) {
 		if empty[j] = after <= explained*explained*before[j]; empty[j] {
-			scaleColumn(a, j, 0)
+			for i := range a.Rows {
+				a.Data[i*a.Stride+j] = 0
+			}
 		}
 	}
 	return empty

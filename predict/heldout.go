@@ -33,15 +33,15 @@ func (to moments) add(m moments, first int) {
 func (b *block) sumsOf(i int, f *fold) moments {
 	fit, width := f.fit, b.width
 	b.v = reshaped(b.v, fit.r+fit.k, width)
+	held, train := blas64.General{}, b.train
 	if b.d.rows {
 		b.pairOfRows(f.split.held, f.split.train)
+		held, train = rowsOf(b.pair, 0, len(f.split.held)), rowsOf(b.pair, len(f.split.held), b.pair.Rows)
 	} else {
-		m := b.train.Rows
-		b.pair = reshaped(b.pair, 2*m, width)
-		copy(b.pair.Data, b.held[i].Data)
-		copy(b.pair.Data[m*width:], b.train.Data)
+		held = b.held[i]
 	}
-	multiplyTo(b.v, 1, plain, fit.v, plain, b.pair, 0)
+	multiplyTo(b.v, 1, plain, columnsOf(fit.v, 0, held.Rows), plain, held, 0)
+	multiplyTo(b.v, 1, plain, columnsOf(fit.v, held.Rows, fit.v.Cols), plain, train, 1)
 	b.u = reshaped(b.u, fit.r, width)
 	multiplyTo(b.u, 1, plain, fit.h, plain, b.out.b, 0)
 

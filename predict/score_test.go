@@ -39,6 +39,32 @@ func TestScoresByHand(t *testing.T) {
 	}
 }
 
+// A prediction that says the same of everyone, though not 0.
+func TestScoresOfAConstant(t *testing.T) {
+	target, predicted := []float64{1, -1, 2, 0}, []float64{.1, .1, .1, .1}
+	m := newMoments(1)
+	m.n[0], m.t[0], m.tt[0], m.p[0], m.pp[0], m.tp[0] = 4, 2, 6, .4, .04, .2
+	for metric, want := range map[Metric]float64{R: 0, RByFold: 0, Rho: 0, R2: 0, MAE: 1, RMSE: math.Sqrt((.81 + 1.21 + 3.61 + .01) / 4)} {
+		if got, constant := scorePairs(metric, target, predicted); math.Abs(got-want) > 1e-15 || !constant {
+			t.Errorf("%v: %v, %v, want %v", metric, got, constant, want)
+		}
+		if metric == Rho || metric == MAE {
+			continue
+		}
+		if got, constant := scoreSums(metric, m, 0); math.Abs(got-want) > 1e-15 || !constant {
+			t.Errorf("%v from sums: %v, %v, want %v", metric, got, constant, want)
+		}
+	}
+	if slope, _ := scorePairs(CalibrationSlope, target, predicted); !math.IsNaN(slope) {
+		t.Errorf("calibration slope %v", slope)
+	}
+	for _, metric := range []Metric{R, Rho} { // or the target
+		if got, constant := scorePairs(metric, predicted, target); got != 0 || !constant {
+			t.Errorf("%v of a constant target: %v, %v", metric, got, constant)
+		}
+	}
+}
+
 func TestMeanRanks(t *testing.T) {
 	got := meanRanks([]float64{3, -1, 3, 7, 3, -1})
 	for i, want := range []float64{4, 1.5, 4, 6, 4, 1.5} {

@@ -87,17 +87,15 @@ func (s *sources) factor(c blas64.General, sp *split) (triangle blas64.General, 
 // filled, without those that are constant in the training set. It returns
 // each one's sum of squares about the training mean.
 func (s *sources) fillActive(g *geometry, sp *split) (before []float64) {
-	fill := make([]float64, s.p)
-	for j := range s.p {
-		mean, square := s.inTraining(j, sp.train)
+	fill, squares := s.inTraining(sp.train)
+	for j, square := range squares {
 		if square <= s.grain[j]*s.grain[j]*float64(len(sp.train)) {
 			g.constant = append(g.constant, j)
 			continue
 		}
-		fill[j] = mean
 		before = append(before, square)
 		g.active = append(g.active, j)
-		g.fill = append(g.fill, mean)
+		g.fill = append(g.fill, fill[j])
 	}
 	take := func(rows []int) blas64.General {
 		x := newTable(len(rows), len(g.active))
@@ -116,37 +114,38 @@ func (s *sources) fillActive(g *geometry, sp *split) (before []float64) {
 	return before
 }
 
-// inTraining returns the mean of measure j over the training people who have
-// it, and their sum of squares about it: exactly 0 when all values are equal.
-func (s *sources) inTraining(j int, train []int) (mean, square float64) {
-	column, marker := s.k+j, -1
-	if s.markerOf[j] >= 0 {
-		marker = s.k + s.p + s.markerOf[j]
-	}
-	each := func(visit func(v float64)) {
+// inTraining returns the mean of every measure over the training people who
+// have it, and their sum of squares about it: exactly 0 when all values are
+// equal.
+func (s *sources) inTraining(train []int) (means, squares []float64) {
+	means, squares = make([]float64, s.p), make([]float64, s.p)
+	first, count := make([]float64, s.p), make([]float64, s.p)
+	varies := make([]bool, s.p)
+	each := func(visit func(j int, v float64)) {
 		for _, r := range train {
-			values := row(s.all, r)
-			if marker < 0 || values[marker] == 0 {
-				visit(values[column])
+			values := row(s.all, r)[s.k:]
+			for j, v := range values[:s.p] {
+				if m := s.markerOf[j]; m < 0 || values[s.p+m] == 0 {
+					visit(j, v)
+				}
 			}
 		}
 	}
-	first, count, sum := math.NaN(), 0, 0.0
-	constant := true
-	each(func(v float64) {
-		if count == 0 {
-			first = v
+	each(func(j int, v float64) {
+		if count[j] == 0 {
+			first[j] = v
 		}
-		constant = constant && v == first
-		count++
-		sum += v
+		varies[j] = varies[j] || v != first[j]
+		count[j]++
+		means[j] += v
 	})
-	if constant {
-		return first, 0
+	for j := range means {
+		if means[j] /= count[j]; !varies[j] {
+			means[j] = first[j]
+		}
 	}
-	mean = sum / float64(count)
-	each(func(v float64) { square += (v - mean) * (v - mean) })
-	return mean, square
+	each(func(j int, v float64) { squares[j] += (v - means[j]) * (v - means[j]) })
+	return means, squares
 }
 
 // regressOut replaces x by its residuals on c, whose QR factors are given, and

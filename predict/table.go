@@ -68,7 +68,7 @@ func multiplyTo(dst blas64.General, alpha float64, ta blas.Transpose, a blas64.G
 		}
 		return
 	}
-	dense.Default().Dgemm(ta, tb, dst.Rows, dst.Cols, inner, alpha, a.Data, a.Stride, b.Data, b.Stride, beta, dst.Data, dst.Stride)
+	dense.Single().Dgemm(ta, tb, dst.Rows, dst.Cols, inner, alpha, a.Data, a.Stride, b.Data, b.Stride, beta, dst.Data, dst.Stride)
 }
 
 // product returns op(a) op(b).
