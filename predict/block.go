@@ -11,7 +11,7 @@ import (
 type block struct {
 	d       *Design
 	l       *layout
-	sources blas64.General // in the order of the layout
+	sources *sources // in the order of the layout
 	folds   []*fold
 	search  bool
 
@@ -131,5 +131,5 @@ func (b *block) crossProducts() {
 
 // over adds the cross-products of rows from..to-1 to beta times sums.
 func (b *block) over(from, to int, sums blas64.General, beta float64) {
-	multiplyTo(sums, 1, turned, rowsOf(b.sources, from, to), plain, rowsOf(b.y, from, to), beta)
+	multiplyTo(sums, 1, turned, rowsOf(b.sources.all, from, to), plain, rowsOf(b.y, from, to), beta)
 }

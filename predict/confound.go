@@ -33,11 +33,15 @@ type ConfoundError struct {
 }
 
 func (e *ConfoundError) Error() string {
-	where := fmt.Sprintf("repeat %d, outer fold %d", e.Repeat, e.Outer)
-	if e.Inner >= 0 {
-		where += fmt.Sprintf(", inner fold %d", e.Inner)
+	return fmt.Sprintf("predict: confound %d is constant, or follows from the confounds before it, among the training people of %s, but not among all people; give folds that keep it in every training set, or leave it out", e.Confound, place(e.Repeat, e.Outer, e.Inner))
+}
+
+// place names a training set; inner is -1 for that of the whole outer fold.
+func place(repeat, outer, inner int) string {
+	if inner < 0 {
+		return fmt.Sprintf("repeat %d, outer fold %d", repeat, outer)
 	}
-	return fmt.Sprintf("predict: confound %d is constant, or follows from the confounds before it, among the training people of %s, but not among all people; give folds that keep it in every training set, or leave it out", e.Confound, where)
+	return fmt.Sprintf("repeat %d, outer fold %d, inner fold %d", repeat, outer, inner)
 }
 
 // Residuals returns the residuals of every trait (n x t) on a constant and the

@@ -175,6 +175,9 @@ func TestExplainedShareBothWays(t *testing.T) {
 	}
 	// Where the report would be too large our own takes its place.
 	q := invent(shape{people: 300, measures: 1, confounds: 2, traits: 200, repeats: 1, outer: 2, inner: 2}, 1)
+	for i := range 300 {
+		q.traits.Set(i, 3, 5)
+	}
 	if reportable(300, 200, 2) {
 		t.Fatal("the report is used")
 	}
@@ -185,6 +188,9 @@ func TestExplainedShareBothWays(t *testing.T) {
 	one, err := ExplainedShare(mat.DenseCopyOf(q.traits.Slice(0, 300, 17, 18)), q.confounds)
 	if err != nil {
 		t.Fatal(err)
+	}
+	if !math.IsNaN(many[3]) {
+		t.Errorf("a constant trait has the share %v", many[3])
 	}
 	if math.Abs(many[17]-one[0]) > 1e-12 {
 		t.Errorf("trait 17: %v among many, %v alone", many[17], one[0])

@@ -4,7 +4,6 @@ import (
 	"context"
 	"errors"
 	"fmt"
-	"math"
 	"slices"
 	"sync"
 	"sync/atomic"
@@ -17,10 +16,6 @@ import (
 // keepBytes bounds the decompositions that a Design keeps, and about those that
 // are in memory at once when it keeps none.
 const keepBytes = 48 << 20
-
-// mostMissing is the share of people without a measure above which filling it
-// is refused.
-const mostMissing = 0.2
 
 // A Design is a set of measures and confounds of the same people, with the
 // folds and penalties by which any trait of these people is predicted. All
@@ -86,21 +81,48 @@ type foldSizes struct {
 // (*ConfoundError), a measure missing in more than a fifth of the people, and
 // a metric that the folds do not allow.
 func NewDesign(measures, confounds *mat.Dense, folds *crossval.Folds, opt Options) (*Design, error) {
-	return newDesign(measures, confounds, folds, opt, keepBytes)
+	return newDesign(measures, nil, confounds, folds, opt, keepBytes)
 }
 
-func newDesign(measures, confounds *mat.Dense, folds *crossval.Folds, opt Options, keepBytes int) (*Design, error) {
+// NewLearnedDesign is NewDesign for measures that each training set learns
+// anew. It costs about as many times more as a training set has people for a
+// measure.
+func NewLearnedDesign(learner Learner, confounds *mat.Dense, folds *crossval.Folds, opt Options) (*Design, error) {
+	if learner == nil || learner.Count() < 1 {
+		return nil, errors.New("predict: no measures")
+	}
+	return newDesign(nil, learner, confounds, folds, opt, keepBytes)
+}
+
+func newDesign(measures *mat.Dense, learner Learner, confounds *mat.Dense, folds *crossval.Folds, opt Options, keepBytes int) (*Design, error) {
 	if err := opt.Validate(); err != nil {
 		return nil, err
 	}
-	if measures == nil || measures.IsEmpty() {
-		return nil, errors.New("predict: no measures")
+	if folds == nil || len(folds.Repeats) == 0 {
+		return nil, errors.New("predict: no folds")
 	}
-	n, p := measures.Dims()
+	n, p := folds.People(), 0
+	if learner == nil {
+		if measures == nil || measures.IsEmpty() {
+			return nil, errors.New("predict: no measures")
+		}
+		n, p = measures.Dims()
+		if err := checkFinite("measure", measures, opt.FillMissing); err != nil {
+			return nil, err
+		}
+	} else {
+		p = learner.Count()
+	}
 	if err := opt.checkScalers(p); err != nil {
 		return nil, err
 	}
-	if err := errors.Join(checkFinite("measure", measures, opt.FillMissing), checkConfounds(confounds, n)); err != nil {
+	if opt.scaled() {
+		if learner == nil {
+			learner = asTheyAre{measures}
+		}
+		learner = rescaled{learner, slices.Clone(opt.Scalers)}
+	}
+	if err := checkConfounds(confounds, n); err != nil {
 		return nil, err
 	}
 	layouts, err := newLayouts(folds, n, len(opt.Penalties) > 1)
@@ -112,12 +134,23 @@ func newDesign(measures, confounds *mat.Dense, folds *crossval.Folds, opt Option
 	if err := d.checkMetric(); err != nil {
 		return nil, err
 	}
-	if d.source, err = d.newSources(measures, confounds); err != nil {
+	if d.source, err = newSources(measures, learner, confounds, n, opt.FillMissing); err != nil {
 		return nil, err
 	}
-	d.rows = p > d.smallestTraining() || d.opt.scaled()
+	if confounds != nil {
+		_, c := confounds.Dims()
+		for j := range c {
+			if !slices.Contains(d.source.confound, j) {
+				d.notes.PassedOver = append(d.notes.PassedOver, j)
+			}
+		}
+	}
+	d.rows = learner != nil || d.source.p > d.smallestTraining()
 	d.plan()
-	return d, d.prepare()
+	if err := d.prepare(); err != nil {
+		return nil, err
+	}
+	return d, nil
 }
 
 // Notes returns what should be known of the design.
@@ -152,67 +185,6 @@ func (d *Design) checkMetric() error {
 		return fmt.Errorf("predict: r_by_fold needs 3 people in every outer fold; the smallest has %d", d.sizes.least)
 	}
 	return nil
-}
-
-// newSources puts the basis of the confounds, the measures about 0 and the
-// markers of missing values side by side, one row a person.
-func (d *Design) newSources(measures, confounds *mat.Dense) (*sources, error) {
-	n, p := measures.Dims()
-	basis, kept := confoundBasis(confounds, n)
-	if confounds != nil {
-		_, c := confounds.Dims()
-		for j := range c {
-			if !slices.Contains(kept, j) {
-				d.notes.PassedOver = append(d.notes.PassedOver, j)
-			}
-		}
-	}
-	columns := standardColumns(measures)
-	s := &sources{k: basis.Cols, p: p, confound: kept, markerOf: make([]int, p), scale: columns.scale, grain: columns.grain}
-	if d.opt.scaled() {
-		s.scalers = d.opt.Scalers
-	}
-	markers := 0
-	for j := range p {
-		if s.scalers != nil && s.scalers[j] != nil {
-			s.scale[j] = 1 // learnt scales have their own unit
-		}
-		missing := 0
-		for i := range n {
-			if math.IsNaN(measures.At(i, j)) {
-				missing++
-			}
-		}
-		if float64(missing) > mostMissing*float64(n) {
-			return nil, fmt.Errorf("predict: measure %d is missing in %d of %d people; at most a fifth can be filled", j, missing, n)
-		}
-		s.markerOf[j] = -1
-		if missing > 0 {
-			s.markerOf[j] = markers
-			markers++
-		}
-	}
-	s.all = newTable(n, s.k+p+markers)
-	for i := range n {
-		to := row(s.all, i)
-		copy(to, row(basis, i))
-		for j, v := range row(columns.values, i) {
-			if math.IsNaN(v) {
-				v = 0
-				to[s.k+p+s.markerOf[j]] = 1
-			}
-			to[s.k+j] = v
-		}
-	}
-	return s, nil
-}
-
-// inOrder returns the sources with rows in the order of a layout.
-func (s *sources) inOrder(l *layout) *sources {
-	ordered := *s
-	ordered.all = newTable(s.all.Rows, s.all.Cols)
-	gatherTo(ordered.all, s.all, l.order)
-	return &ordered
 }
 
 // smallestTraining returns the size of the smallest training set.

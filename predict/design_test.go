@@ -86,11 +86,11 @@ func TestStagesDoNotMatter(t *testing.T) {
 		q := invent(shapes()[name], 4)
 		for _, metric := range Metrics() {
 			opt := Options{Penalties: q.penalties, FillMissing: true, Metric: metric}
-			whole, err := newDesign(q.measures, q.confounds, q.folds, opt, 1<<40)
+			whole, err := newDesign(q.measures, nil, q.confounds, q.folds, opt, 1<<40)
 			if err != nil {
 				t.Fatal(err)
 			}
-			parts, err := newDesign(q.measures, q.confounds, q.folds, opt, 1)
+			parts, err := newDesign(q.measures, nil, q.confounds, q.folds, opt, 1)
 			if err != nil {
 				t.Fatal(err)
 			}
@@ -233,6 +233,64 @@ func TestZeroWeights(t *testing.T) {
 		if w := weights[0][j]; w.Weight != 0 || w.SD != 0 || !math.IsNaN(w.SignAgreement) || w.Pattern != 0 || w.MeasureSD != 0 {
 			t.Errorf("measure %d: %+v, want zeros", j, w)
 		}
+	}
+}
+
+func TestNotes(t *testing.T) {
+	q := invent(shapes()["cells"], 1)
+	if n := q.design(t, Options{}).Notes(); n.IllConditioned || n.SmallFolds != 0 || n.ZeroWeights != nil || n.PassedOver != nil {
+		t.Errorf("notes of a plain design: %+v", n)
+	}
+	q.penalties = []float64{1e-8, 1}
+	if n := q.design(t, Options{}).Notes(); !n.IllConditioned {
+		t.Errorf("a penalty of %v for 90 people and 7 measures is not noted", q.penalties[0])
+	}
+	r := &q.folds.Repeats[0]
+	held := 0
+	for i, f := range r.Outer {
+		if f != 3 {
+			continue
+		}
+		if held++; held > 2 { // leave two people in fold 3
+			r.Outer[i], r.Inner[3][i], r.Inner[0][i] = 0, r.Cell[i], -1
+		}
+	}
+	d := q.design(t, Options{Metric: R2})
+	if n := d.Notes(); n.SmallFolds != 1 {
+		t.Errorf("%d small folds", n.SmallFolds)
+	}
+	fit, err := d.Fit(context.Background(), q.traits)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if fit.Scores[0][0].Metric == RByFold {
+		t.Error("r_by_fold is reported although a fold has fewer than 3 people")
+	}
+}
+
+// Values that differ by rounding alone are constant.
+func TestRoundingIsNoMeasure(t *testing.T) {
+	s := shapes()["given folds"]
+	q := invent(s, 1)
+	a, b := 0.1, 0.2
+	for i := range s.people {
+		v := 0.3
+		if i%2 == 0 {
+			v = a + b // 0.30000000000000004
+		}
+		q.measures.Set(i, 1, v)
+		if q.folds.Repeats[0].Outer[i] == 2 {
+			v = 5
+		}
+		q.measures.Set(i, 4, v) // constant only while fold 2 is held out
+	}
+	if q.measures.At(0, 1) == q.measures.At(1, 1) {
+		t.Fatal("no rounding")
+	}
+	want := []ZeroWeight{{Measure: 1, ConstantOuter: 4, ConstantInner: 12}, {Measure: 4, ConstantOuter: 1, ConstantInner: 3}}
+	got := q.design(t, Options{}).Notes().ZeroWeights
+	if len(got) != 2 || got[0] != want[0] || got[1] != want[1] {
+		t.Errorf("weights of 0: %+v, want %+v", got, want)
 	}
 }
 

@@ -13,6 +13,7 @@ type fold struct {
 	inner     []innerFold
 	active    []int     // measures with a weight
 	sd        []float64 // and their training deviations
+	unit      []float64 // in these of the measures' own units
 	innerHeld []float64 // per row: 1 / people of its inner fold, 0 for those held out
 
 	zeroOuter, zeroInner []int // measures, one entry a training set: constant
@@ -36,7 +37,7 @@ func (d *Design) newFold(s *sources, l *layout, o int, decompose bool) (*fold, e
 	if err != nil {
 		return nil, err
 	}
-	f.active, f.sd = g.active, g.sd
+	f.active, f.sd, f.unit = g.active, g.sd, g.unit
 	f.zeroOuter, f.goneOuter = g.constant, g.explained
 	if decompose {
 		if f.fit, err = s.decompose(g, d.rows, d.opt.Penalties, true); err != nil {

@@ -75,9 +75,6 @@ func (l *layout) splits(o int) (outer split, inner []split) {
 
 // newLayouts checks the folds of so many people and orders every repeat.
 func newLayouts(folds *crossval.Folds, people int, search bool) ([]*layout, error) {
-	if folds == nil || len(folds.Repeats) == 0 {
-		return nil, errors.New("predict: no folds")
-	}
 	layouts := make([]*layout, len(folds.Repeats))
 	for i := range folds.Repeats {
 		l, err := newLayout(&folds.Repeats[i], people, search)

@@ -2,8 +2,6 @@ package predict
 
 import (
 	"context"
-	"fmt"
-	"math"
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
@@ -81,39 +79,4 @@ func scoreOf(t testing.TB, f *Fit, trait int, metric Metric) Score {
 	}
 	t.Fatalf("no score %v", metric)
 	return Score{}
-}
-
-func benchmarkProblem(cells bool) problem {
-	q := invent(shape{people: 1000, measures: 50, confounds: 3, traits: 50, repeats: 1, outer: 10, inner: 5, cells: cells}, 1)
-	q.penalties = make([]float64, 20)
-	for i := range q.penalties {
-		q.penalties[i] = math.Pow(10, -1+6*float64(i)/19)
-	}
-	return q
-}
-
-func BenchmarkNull(b *testing.B) {
-	for _, cells := range []bool{true, false} {
-		for _, workers := range []int{1, 2} {
-			name := "folds=given"
-			if cells {
-				name = "folds=cells"
-			}
-			b.Run(fmt.Sprintf("%s/workers=%d", name, workers), func(b *testing.B) {
-				q := benchmarkProblem(cells)
-				d := q.design(b, Options{Workers: workers})
-				residuals, err := Residuals(q.traits, q.confounds)
-				if err != nil {
-					b.Fatal(err)
-				}
-				arrangements := drawn{100, 3}
-				for b.Loop() {
-					if _, err := d.Null(context.Background(), residuals, arrangements, nil); err != nil {
-						b.Fatal(err)
-					}
-				}
-				b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/float64(50*100), "ns/column")
-			})
-		}
-	}
 }

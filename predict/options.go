@@ -104,8 +104,8 @@ type Options struct {
 	FillMissing bool
 	// Scalers is nil or holds a Scaler, or nil, for each measure: its scale is
 	// learnt in each training set anew, outer and inner, before missing values
-	// are filled and confounds are taken out. Work then goes by the rows of
-	// people, at a higher cost.
+	// are filled and confounds are taken out. The design then costs what
+	// NewLearnedDesign says.
 	Scalers []Scaler
 	// Workers is how many goroutines compute; 0 means one a processor. Results
 	// do not depend on it.
@@ -140,7 +140,6 @@ func (o Options) Validate() error {
 // filled returns a copy with the defaults in place of zeros.
 func (o Options) filled() Options {
 	o.Penalties = slices.Clone(o.Penalties)
-	o.Scalers = slices.Clone(o.Scalers)
 	if o.Confidence == 0 {
 		o.Confidence = 0.95
 	}

@@ -51,7 +51,7 @@ func (d *Design) run(ctx context.Context, cols columns, search bool, v visitor, 
 			return err
 		}
 		l := d.layouts[s.repeat]
-		ordered := d.source.inOrder(l).all
+		ordered := d.source.inOrder(l)
 		width := d.blockWidth(l, decomposed)
 		blocks := (cols.count() + width - 1) / width
 		workspaces := make([]*block, min(d.opt.Workers, blocks))
@@ -104,9 +104,9 @@ func (d *Design) blockWidth(l *layout, folds []*fold) int {
 func (d *Design) directions() int { return min(d.source.p, d.people) + d.source.k }
 
 // newBlock returns a workspace for up to so many columns.
-func (d *Design) newBlock(l *layout, sources blas64.General, folds []*fold, width int, search bool) *block {
+func (d *Design) newBlock(l *layout, sources *sources, folds []*fold, width int, search bool) *block {
 	b := &block{d: d, l: l, sources: sources, folds: folds, search: search}
-	n, k, m := l.people(), d.source.k, sources.Cols
+	n, k, m := l.people(), d.source.k, sources.all.Cols
 	table := func(rows int) blas64.General { return newTable(rows, width) }
 	b.y, b.squared = table(n), table(n)
 	b.inside, b.errors = table(len(folds)), table(len(d.opt.Penalties))

@@ -2,20 +2,15 @@ package predict
 
 import (
 	"fmt"
-	"math"
 
-	"gonum.org/v1/gonum/blas/blas64"
+	"gonum.org/v1/gonum/mat"
 )
 
 // A Scaler puts one measure on a scale that is learnt from the people of a
-// training set: it returns the values of the training people and of the held-out
+// training set: it returns the values of the training people and of the other
 // people on that scale, of the same lengths, and must not change its arguments.
-// NaN, a missing value, stays NaN.
-//
-// The values it sees are those of the measure about some origin and in some
-// unit, so that only scales that depend on neither make sense: ranks, and what
-// is made of them. It is called from several goroutines.
-type Scaler func(training, held []float64) (trainingScaled, heldScaled []float64)
+// NaN, a missing value, stays NaN. It is called from several goroutines.
+type Scaler func(training, others []float64) (trainingScaled, othersScaled []float64)
 
 // scaled reports whether any measure has a scaler.
 func (o Options) scaled() bool {
@@ -35,61 +30,64 @@ func (o Options) checkScalers(p int) error {
 	return nil
 }
 
-// rescale puts the active measures that have a scaler on their scale, on both
-// sides of the split, missing values then filled with the training mean. It
-// updates the sums of squares about the training means.
-func (s *sources) rescale(g *geometry, sp *split, before []float64) {
-	if s.scalers == nil {
-		return
+// rescaled is the Learner of measures with scalers.
+type rescaled struct {
+	from    Learner
+	scalers []Scaler // per measure, or nil
+}
+
+func (r rescaled) Count() int { return r.from.Count() }
+
+func (r rescaled) Learn(training []int) (*mat.Dense, error) {
+	from, err := r.from.Learn(training)
+	if err != nil {
+		return nil, err
 	}
-	for a, j := range g.active {
-		scaler := s.scalers[j]
+	measures := mat.DenseCopyOf(from)
+	n, p := measures.Dims()
+	if p != len(r.scalers) {
+		return measures, nil // refused by the caller
+	}
+	others := make([]int, 0, n-len(training))
+	for person, next := 0, 0; person < n; person++ {
+		if next < len(training) && training[next] == person {
+			next++
+		} else {
+			others = append(others, person)
+		}
+	}
+	for j, scaler := range r.scalers {
 		if scaler == nil {
 			continue
 		}
-		training, held := scaler(s.withMissing(g.x, sp.train, a, j), s.withMissing(g.held, sp.held, a, j))
-		mean, count := 0.0, 0.0
-		for _, v := range training {
-			if !math.IsNaN(v) {
-				mean += v
-				count++
-			}
-		}
-		mean /= count // an active measure has a training value
-		before[a] = 0
-		setFilled(g.x, a, training, mean)
-		setFilled(g.held, a, held, mean)
-		for _, v := range training {
-			if !math.IsNaN(v) {
-				before[a] += (v - mean) * (v - mean)
-			}
-		}
-		g.fill[a] = mean
+		a, b := scaler(valuesOf(from, j, training), valuesOf(from, j, others))
+		setValues(measures, j, training, a)
+		setValues(measures, j, others, b)
 	}
+	return measures, nil
 }
 
-// withMissing returns column a of x, measure j of the given people, with NaN
-// where a missing value was filled.
-func (s *sources) withMissing(x blas64.General, people []int, a, j int) []float64 {
+// valuesOf returns measure j of the given people.
+func valuesOf(measures *mat.Dense, j int, people []int) []float64 {
 	values := make([]float64, len(people))
-	for i, r := range people {
-		values[i] = row(x, i)[a]
-		if m := s.markerOf[j]; m >= 0 && row(s.all, r)[s.k+s.p+m] != 0 {
-			values[i] = math.NaN()
-		}
+	for i, person := range people {
+		values[i] = measures.At(person, j)
 	}
 	return values
 }
 
-// setFilled puts values into column a of x, and fill where they are missing.
-func setFilled(x blas64.General, a int, values []float64, fill float64) {
-	if len(values) != x.Rows {
-		panic(fmt.Sprintf("predict: a scaler returned %d values for %d people", len(values), x.Rows))
+func setValues(measures *mat.Dense, j int, people []int, values []float64) {
+	if len(values) != len(people) {
+		panic(fmt.Sprintf("predict: a scaler returned %d values for %d people", len(values), len(people)))
 	}
-	for i, v := range values {
-		if math.IsNaN(v) {
-			v = fill
-		}
-		row(x, i)[a] = v
+	for i, person := range people {
+		measures.Set(person, j, values[i])
 	}
 }
+
+// asTheyAre is the Learner of measures that learn nothing.
+type asTheyAre struct{ measures *mat.Dense }
+
+func (m asTheyAre) Count() int { _, p := m.measures.Dims(); return p }
+
+func (m asTheyAre) Learn([]int) (*mat.Dense, error) { return m.measures, nil }

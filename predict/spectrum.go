@@ -131,7 +131,7 @@ func (s *sources) throughSources(g *geometry, v blas64.General) blas64.General {
 		from, to := row(scaled, i), row(m, i)[s.k:]
 		for a, j := range g.active {
 			to[j] = from[a]
-			if marker := s.markerOf[j]; marker >= 0 {
+			if marker := s.fixed.markerOf[j]; marker >= 0 {
 				to[s.p+marker] = from[a] * g.fill[a]
 			}
 		}

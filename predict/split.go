@@ -16,19 +16,6 @@ type split struct {
 	train, held          []int
 }
 
-// sources are the columns, one row a person, that every training set works
-// from: [basis of the confounds, measures, markers of missing values]. A
-// measure with missing values holds 0 there and has a marker column of ones.
-type sources struct {
-	all      blas64.General
-	k, p     int       // basis columns (the constant first), measures
-	confound []int     // basis column j+1 is of confound[j]
-	markerOf []int     // marker column of a measure, counted from 0 behind the measures; -1 for none
-	scalers  []Scaler  // per measure, nil when none has one
-	scale    []float64 // per measure, its deviation over all people, the unit here
-	grain    []float64 // per measure, the deviation that the rounding of its values alone can make
-}
-
 // geometry is what one training set makes of the measures: filled, residuals
 // on the confounds, standardised, and the same map on the held-out people.
 type geometry struct {
@@ -37,6 +24,7 @@ type geometry struct {
 	coefficient blas64.General // k x active: of the basis, before standardising
 	sd          []float64      // active: after the confounds, divisor n
 	fill        []float64      // active: training mean of those who have the measure
+	unit        []float64      // active: what 1 of x's sources is in the measure's own units
 	inverse     blas64.General // k x k: (C'C)^-1 over the training people
 	c, cHeld    blas64.General // basis of the training and the held-out people
 	constant    []int          // measures that were constant before the confounds
@@ -54,8 +42,11 @@ func (s *sources) measure(sp *split) (*geometry, error) {
 	}
 	g.inverse = invertSquare(triangle)
 
-	before := s.fillActive(g, sp)
-	s.rescale(g, sp, before)
+	m, err := s.of(sp)
+	if err != nil {
+		return nil, err
+	}
+	before := m.fillActive(g, sp)
 	g.coefficient = regressOut(g.x, g.c, triangle, tau)
 	multiplyTo(g.held, -1, plain, g.cHeld, plain, g.coefficient, 1)
 	g.standardise(before)
@@ -65,7 +56,7 @@ func (s *sources) measure(sp *split) (*geometry, error) {
 // factor returns the QR factors of the basis over the training people.
 func (s *sources) factor(c blas64.General, sp *split) (triangle blas64.General, tau []float64, err error) {
 	if c.Rows <= s.k {
-		return triangle, nil, fmt.Errorf("predict: %d training people in repeat %d, outer fold %d, inner fold %d are too few for a constant and %d confounds", c.Rows, sp.repeat, sp.outer, sp.inner, s.k-1)
+		return triangle, nil, fmt.Errorf("predict: %d training people in %s are too few for a constant and %d confounds", c.Rows, place(sp.repeat, sp.outer, sp.inner), s.k-1)
 	}
 	triangle = newTable(c.Rows, s.k)
 	copy(triangle.Data, c.Data)
@@ -86,24 +77,24 @@ func (s *sources) factor(c blas64.General, sp *split) (triangle blas64.General, 
 // fillActive copies the measures of both sides of the split, missing values
 // filled, without those that are constant in the training set. It returns
 // each one's sum of squares about the training mean.
-func (s *sources) fillActive(g *geometry, sp *split) (before []float64) {
-	fill, squares := s.inTraining(sp.train)
+func (m *measured) fillActive(g *geometry, sp *split) (before []float64) {
+	fill, squares := m.inTraining(sp.train)
 	for j, square := range squares {
-		if square <= s.grain[j]*s.grain[j]*float64(len(sp.train)) {
+		if square <= m.grain[j]*m.grain[j]*float64(len(sp.train)) {
 			g.constant = append(g.constant, j)
 			continue
 		}
 		before = append(before, square)
 		g.active = append(g.active, j)
-		g.fill = append(g.fill, fill[j])
+		g.fill, g.unit = append(g.fill, fill[j]), append(g.unit, m.scale[j])
 	}
 	take := func(rows []int) blas64.General {
 		x := newTable(len(rows), len(g.active))
 		for i, r := range rows {
-			from, to := row(s.all, r)[s.k:], row(x, i)
+			to := row(x, i)
 			for a, j := range g.active {
-				to[a] = from[j]
-				if m := s.markerOf[j]; m >= 0 && from[s.p+m] != 0 {
+				v, missing := m.at(r, j)
+				if to[a] = v; missing {
 					to[a] = fill[j]
 				}
 			}
@@ -117,15 +108,15 @@ func (s *sources) fillActive(g *geometry, sp *split) (before []float64) {
 // inTraining returns the mean of every measure over the training people who
 // have it, and their sum of squares about it: exactly 0 when all values are
 // equal.
-func (s *sources) inTraining(train []int) (means, squares []float64) {
-	means, squares = make([]float64, s.p), make([]float64, s.p)
-	first, count := make([]float64, s.p), make([]float64, s.p)
-	varies := make([]bool, s.p)
+func (m *measured) inTraining(train []int) (means, squares []float64) {
+	p := len(m.markerOf)
+	means, squares = make([]float64, p), make([]float64, p)
+	first, count := make([]float64, p), make([]float64, p)
+	varies := make([]bool, p)
 	each := func(visit func(j int, v float64)) {
 		for _, r := range train {
-			values := row(s.all, r)[s.k:]
-			for j, v := range values[:s.p] {
-				if m := s.markerOf[j]; m < 0 || values[s.p+m] == 0 {
+			for j := range p {
+				if v, missing := m.at(r, j); !missing {
 					visit(j, v)
 				}
 			}
@@ -204,7 +195,7 @@ func (g *geometry) standardise(before []float64) {
 		}
 	}
 	g.x, g.held, g.coefficient = pick(g.x, keep), pick(g.held, keep), pick(g.coefficient, keep)
-	g.active, g.fill = choose(g.active, keep), choose(g.fill, keep)
+	g.active, g.fill, g.unit = choose(g.active, keep), choose(g.fill, keep), choose(g.unit, keep)
 	g.sd = make([]float64, len(keep))
 	for a, from := range keep {
 		g.sd[a] = math.Sqrt(after[from] / n)

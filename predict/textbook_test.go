@@ -15,6 +15,7 @@ import (
 type textbook struct {
 	measures, confounds *mat.Dense
 	penalties           []float64
+	learner             Learner  // instead of measures
 	scalers             []Scaler // nil: measures as they are
 }
 
@@ -47,6 +48,9 @@ func (b textbook) split(y []float64, train, held []int) textbookSplit {
 	c := 0
 	if b.confounds != nil {
 		_, c = b.confounds.Dims()
+	}
+	if b.learner != nil {
+		b.measures, _ = b.learner.Learn(train)
 	}
 	_, p := b.measures.Dims()
 	design := func(rows []int) *mat.Dense {
@@ -237,8 +241,7 @@ func leastSquares(dst *mat.Dense, a, b *mat.Dense) {
 }
 
 func ridgeByNormalEquations(x, y *mat.Dense, penalty float64) *mat.Dense {
-	rows, p := x.Dims()
-	_ = rows
+	_, p := x.Dims()
 	var gram mat.SymDense
 	gram.SymOuterK(1, x.T())
 	for j := range p {
@@ -293,7 +296,6 @@ type shape struct {
 	cells                               bool
 	collinear, constant                 bool
 	missing                             bool
-	families                            int // 0: none
 }
 
 func invent(s shape, seed uint64) problem {

@@ -158,7 +158,7 @@ func (d *Design) weightsTo(fit *outerFit, b *block, f *fold, scale []float64) {
 	}
 	weights, covariances := b.fromDirections(f, b.out.b), b.fromDirections(f, scaled)
 	for a, j := range f.active {
-		sd := f.sd[a] * d.source.scale[j]
+		sd := f.sd[a] * f.unit[a]
 		for c := range b.width {
 			at, unit := j*fit.weight.Cols+b.first+c, scale[b.first+c]
 			fit.weight.Data[at] = unit * weights.Data[a*b.width+c]
@@ -177,9 +177,7 @@ func (b *block) fromDirections(f *fold, weights blas64.General) blas64.General {
 	}
 	// V is X'U, and U' the first rows of z. X is large and made anew; the split
 	// was measured before, without error.
-	s := *b.d.source
-	s.all = b.sources
-	g, err := s.measure(&f.split)
+	g, err := b.sources.measure(&f.split)
 	if err != nil {
 		panic("predict: a training set changed: " + err.Error())
 	}
