@@ -98,3 +98,41 @@ func TestLeaveOneFamilyOut(t *testing.T) {
 		}
 	}
 }
+
+// TestGivenInnerFolds: inner folds come from a table, too.
+func TestGivenInnerFolds(t *testing.T) {
+	dir := cohortFiles(t, 24)
+	p, err := Open(writeStudy(t, dir, foldStudy("outer: {folds: 5, repeats: 2}")))
+	if err != nil {
+		t.Fatal(err)
+	}
+	outer, inner := strings.Builder{}, strings.Builder{}
+	outer.WriteString("repeat,fold,person\n")
+	inner.WriteString("repeat,fold,inner_fold,person\n")
+	want := map[string]int{}
+	for i, person := range p.Cohort.People {
+		family := p.Cohort.Pedigree.Family(i)
+		fmt.Fprintf(&outer, "1,%d,%s\n", 1+family%3, person)
+		for fold := range 3 {
+			if fold != family%3 {
+				want[fmt.Sprint(fold+1, " ", person)] = 1 + family/3%2
+				fmt.Fprintf(&inner, "1,%d,%d,%s\n", fold+1, 1+family/3%2, person)
+			}
+		}
+	}
+	for name, text := range map[string]string{"folds.csv": outer.String(), "inner.csv": inner.String()} {
+		if err := os.WriteFile(filepath.Join(dir, name), []byte(text), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+	text := strings.Replace(foldStudy("outer: {file: folds.csv}"), "inner: {folds: 3}", "inner: {file: inner.csv}", 1)
+	r := runStudy(t, writeStudy(t, dir, text), 2)
+	if len(r.InnerFolds) != len(want) {
+		t.Fatalf("%d rows, want %d", len(r.InnerFolds), len(want))
+	}
+	for _, f := range r.InnerFolds {
+		if f.InnerFold != want[fmt.Sprint(f.Fold, " ", f.Person)] {
+			t.Errorf("%s is in inner fold %d of fold %d", f.Person, f.InnerFold, f.Fold)
+		}
+	}
+}
