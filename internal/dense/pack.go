@@ -4,14 +4,19 @@ package dense
 const (
 	// blockRows x blockDepth numbers of A fit the second cache.
 	blockRows = 192
-	// blockColumns x blockDepth numbers of B fit the third, a thread.
-	blockColumns = 512
-	// inPlaceRows is up to how many rows of A the columns of B are not worth
-	// copying: each is read once for every panel of rows.
-	inPlaceRows = 96
+	// blockColumns x blockDepth numbers of B fit a thread's part of the third.
+	blockColumns = 1024
 	// largestTile is the number of sums of the largest tile of any kernel.
 	largestTile = 12 * 16
 )
+
+// inPlace reports whether the columns of an operand are better read where they
+// are than copied. They mostly are. But when rows lie a multiple of 4096 bytes
+// apart, all terms of a strip fall on the same few lines of the first cache,
+// and each of many panels of A would fetch them from the second.
+func inPlace(b operand, rows, height int) bool {
+	return !b.transposed && (b.stride%512 != 0 || rows <= 4*height)
+}
 
 // panels are rows of A in the order in which a kernel reads them: panel by
 // panel, term by term, row by row. The rows are spread evenly, so that no panel
@@ -149,6 +154,32 @@ func packAlong(dst, src []float64, stride, depth, vectors, group int) {
 		for _, v := range src[i*stride:][:depth] {
 			dst[at] = v
 			at += group
+		}
+	}
+}
+
+// unpackAlong is packAlong backwards, for groups without room beyond the
+// vectors.
+func unpackAlong(dst, src []float64, stride, depth, vectors int) {
+	i := 0
+	for ; i+4 <= vectors; i += 4 {
+		v0 := dst[i*stride:][:depth]
+		v1 := dst[(i+1)*stride:][:depth]
+		v2 := dst[(i+2)*stride:][:depth]
+		v3 := dst[(i+3)*stride:][:depth]
+		at := i
+		for l := range depth {
+			from := src[at : at+4 : at+4]
+			v0[l], v1[l], v2[l], v3[l] = from[0], from[1], from[2], from[3]
+			at += vectors
+		}
+	}
+	for ; i < vectors; i++ {
+		at := i
+		v := dst[i*stride:][:depth]
+		for l := range v {
+			v[l] = src[at]
+			at += vectors
 		}
 	}
 }

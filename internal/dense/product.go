@@ -24,41 +24,6 @@ func (o operand) flipped() operand {
 	return o
 }
 
-// matrix is a matrix that is written to.
-type matrix struct {
-	rows, columns int
-	data          []float64
-	stride        int
-}
-
-// block is a rectangle of a matrix.
-type block struct{ row, column, rows, columns int }
-
-// part returns a block of the matrix.
-func (x matrix) part(b block) matrix {
-	return matrix{b.rows, b.columns, x.data[b.row*x.stride+b.column:], x.stride}
-}
-
-// row returns the numbers of one row.
-func (x matrix) row(i int) []float64 { return x.data[i*x.stride : i*x.stride+x.columns] }
-
-// scale multiplies the matrix by a number; 0 overwrites whatever is there.
-func (x matrix) scale(by float64) {
-	if by == 1 {
-		return
-	}
-	for i := range x.rows {
-		row := x.row(i)
-		if by == 0 {
-			clear(row)
-			continue
-		}
-		for j := range row {
-			row[j] *= by
-		}
-	}
-}
-
 // product is C = alpha*A*B + beta*C with sums of k terms.
 type product struct {
 	alpha float64
@@ -97,7 +62,7 @@ func (im implementation) Dgemm(tA, tB blas.Transpose, m, n, k int, alpha float64
 	checkLength("b", b, bRows, bColumns, ldb)
 	checkLength("c", c, m, n, ldc)
 
-	to := matrix{m, n, c, ldc}
+	to := matrix{rows: m, columns: n, data: c, stride: ldc}
 	if alpha == 0 || k == 0 {
 		to.scale(beta)
 		return
@@ -120,16 +85,20 @@ func (p product) compute(kn *kernel, s *scratch) {
 	p.c.scale(p.beta)
 	m, n := p.c.rows, p.c.columns
 	rowsAtOnce := roundUp(min(m, blockRows), kn.height())
-	inPlace := !p.b.transposed && m <= inPlaceRows
+	asIs := inPlace(p.b, m, kn.height())
 	for j := 0; j < n; j += blockColumns {
 		columns := min(blockColumns, n-j)
 		for l := 0; l < p.k; l += blockDepth {
 			depth := min(blockDepth, p.k-l)
-			right := s.packColumns(p.b.from(l, j), depth, columns, kn.width, inPlace)
+			right := s.packColumns(p.b.from(l, j), depth, columns, kn.width, asIs)
 			for i := 0; i < m; i += rowsAtOnce {
 				rows := min(rowsAtOnce, m-i)
+				c := p.c.part(block{i, j, rows, columns})
+				if c.empty() {
+					continue
+				}
 				left := s.packRows(p.a.from(i, l), depth, rows, kn.height(), p.alpha)
-				kn.addTiles(p.c.part(block{i, j, rows, columns}), left, right, s)
+				kn.addTiles(c, left, right, s)
 			}
 		}
 	}
@@ -146,20 +115,18 @@ func (kn *kernel) addTiles(c matrix, left panels, right strips, s *scratch) {
 		for panel := range left.count {
 			height := left.height(panel)
 			a := &left.data[row*left.depth]
-			place := c.data[row*c.stride+column:]
-			if width == kn.width {
-				kn.tiles[height-1](left.depth, a, b, bStride, &place[0], c.stride)
-			} else {
-				// A tile that sticks out of C is computed beside it.
-				for i := range height {
-					copy(s.edge[i*kn.width:], place[i*c.stride:i*c.stride+width])
-				}
-				kn.tiles[height-1](left.depth, a, b, bStride, &s.edge[0], kn.width)
-				for i := range height {
-					copy(place[i*c.stride:i*c.stride+width], s.edge[i*kn.width:])
-				}
-			}
+			to := c.part(block{row, column, height, width})
 			row += height
+			switch {
+			case to.empty():
+			case to.whole() && width == kn.width:
+				kn.tiles[height-1](left.depth, a, b, bStride, &to.data[0], to.stride)
+			default: // a tile that sticks out of C is computed beside it
+				beside := matrix{rows: height, columns: width, data: s.edge[:], stride: kn.width}
+				copyTo(beside, to, to)
+				kn.tiles[height-1](left.depth, a, b, bStride, &s.edge[0], kn.width)
+				copyTo(to, beside, to)
+			}
 		}
 	}
 }

@@ -14,7 +14,7 @@ const workPerThread = 8_000_000
 type scratch struct {
 	rows, columns []float64
 	edge          [largestTile]float64
-	square        []float64 // a block on the diagonal of Dsyrk's C
+	turned        []float64 // the unknowns of Dtrsm, transposed
 }
 
 // spare keeps scratch between calls. It carries no values from one call to the

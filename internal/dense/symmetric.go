@@ -3,11 +3,11 @@ package dense
 import "gonum.org/v1/gonum/blas"
 
 const (
-	// diagonalMost is the most rows of a block on the diagonal; half of such a
-	// block is computed for nothing.
-	diagonalMost = 64
-	// diagonalUnit divides the heights and widths of all tiles.
-	diagonalUnit = 48
+	// squareMost is the most rows of a square on the diagonal that one thread
+	// computes.
+	squareMost = 192
+	// squareUnit divides the heights and widths of all tiles.
+	squareUnit = 48
 )
 
 // Dsyrk computes one triangle of
@@ -30,81 +30,43 @@ func (im implementation) Dsyrk(ul blas.Uplo, tA blas.Transpose, n, k int, alpha 
 	checkLength("a", a, rows, columns, lda)
 	checkLength("c", c, n, n, ldc)
 
-	left := operand{a, lda, tA != blas.NoTrans}
-	p := product{alpha: alpha, a: left, b: left.flipped(), k: k, beta: beta, c: matrix{n, n, c, ldc}}
+	triangle := matrix{rows: n, columns: n, data: c, stride: ldc, only: ul}
 	if alpha == 0 || k == 0 {
-		for i := range n {
-			p.c.part(inTriangle(ul, i, n)).scale(beta)
-		}
+		triangle.scale(beta)
 		return
 	}
+	left := operand{a, lda, tA != blas.NoTrans}
+	p := product{alpha: alpha, a: left, b: left.flipped(), k: k, beta: beta, c: triangle}
 	threads := im.workers(n * (n + 1) / 2 * k)
-	diagonal, beside := coverTriangle(ul, n)
-	var parts []block
-	for _, b := range beside {
-		if threads == 1 {
-			parts = append(parts, b)
-		} else {
-			parts = append(parts, cut(b, threads, im.kernel)...)
-		}
+	if threads == 1 {
+		withScratch(func(s *scratch) { p.compute(im.kernel, s) })
+		return
 	}
-	parts = append(parts, diagonal...)
-	share(len(parts), threads, func(s *scratch, i int) {
-		q := p.part(parts[i])
-		if parts[i].row == parts[i].column {
-			q.computeTriangle(ul, im.kernel, s)
-		} else {
-			q.compute(im.kernel, s)
-		}
-	})
+	parts := cutTriangle(ul, n, threads, im.kernel)
+	share(len(parts), threads, func(s *scratch, i int) { p.part(parts[i]).compute(im.kernel, s) })
 }
 
-// inTriangle is the part of row i of an n x n matrix that lies in a triangle.
-func inTriangle(ul blas.Uplo, i, n int) block {
-	if ul == blas.Upper {
-		return block{i, i, 1, n - i}
-	}
-	return block{i, 0, 1, i + 1}
-}
-
-// coverTriangle divides a triangle, the diagonal included, into squares on the
-// diagonal and rectangles beside it, large rectangles first.
-func coverTriangle(ul blas.Uplo, n int) (diagonal, beside []block) {
+// cutTriangle divides a triangle over so many threads: into squares on the
+// diagonal and parts of the rectangles beside them, large ones first.
+func cutTriangle(ul blas.Uplo, n, threads int, kn *kernel) []block {
+	var parts, diagonal []block
 	queue := []block{{0, 0, n, n}}
 	for len(queue) > 0 {
 		square := queue[0]
 		queue = queue[1:]
-		if square.rows <= diagonalMost {
+		if square.rows <= squareMost {
 			diagonal = append(diagonal, square)
 			continue
 		}
 		at := square.row
-		first := roundUp(square.rows/2, diagonalUnit)
+		first := roundUp(square.rows/2, squareUnit)
 		rest := square.rows - first
-		if ul == blas.Upper {
-			beside = append(beside, block{at, at + first, first, rest})
-		} else {
-			beside = append(beside, block{at + first, at, rest, first})
+		beside := block{at, at + first, first, rest}
+		if ul == blas.Lower {
+			beside = block{at + first, at, rest, first}
 		}
+		parts = append(parts, cut(beside, threads, kn)...)
 		queue = append(queue, block{at, at, first, first}, block{at + first, at + first, rest, rest})
 	}
-	return diagonal, beside
-}
-
-// computeTriangle computes one triangle of a square product, by way of a full
-// square: the other triangle of C belongs to the caller.
-func (p product) computeTriangle(ul blas.Uplo, kn *kernel, s *scratch) {
-	n := p.c.rows
-	full := p
-	full.c = matrix{n, n, grow(&s.square, n*n), n}
-	clear(full.c.data)
-	for i := range n {
-		line := inTriangle(ul, i, n)
-		copy(full.c.part(line).row(0), p.c.part(line).row(0))
-	}
-	full.compute(kn, s)
-	for i := range n {
-		line := inTriangle(ul, i, n)
-		copy(p.c.part(line).row(0), full.c.part(line).row(0))
-	}
+	return append(parts, diagonal...)
 }

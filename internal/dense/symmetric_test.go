@@ -93,32 +93,61 @@ func TestDsyrkWithoutTerms(t *testing.T) {
 	}
 }
 
-func TestCoverTriangleCoversOnce(t *testing.T) {
-	for _, ul := range triangles {
-		for n := 1; n < 400; n += 7 {
-			diagonal, beside := coverTriangle(ul, n)
-			times := make([]int, n*n)
-			for _, b := range slices.Concat(diagonal, beside) {
-				for i := range b.rows {
-					for j := range b.columns {
-						times[(b.row+i)*n+b.column+j]++
+func TestCutTriangleCoversOnce(t *testing.T) {
+	for _, kn := range kernels() {
+		for _, ul := range triangles {
+			for n := 1; n < 500; n += 23 {
+				square := matrix{rows: n, columns: n, data: make([]float64, n*n), stride: n, only: ul}
+				for _, b := range cutTriangle(ul, n, 1+n%9, kn) {
+					part := square.part(b)
+					for i := range b.rows {
+						from, to := part.span(i)
+						for j := from; j < to; j++ {
+							part.data[i*n+j]++
+						}
+					}
+				}
+				for i := range n {
+					for j := range n {
+						want := 0.0
+						if i == j || j > i == (ul == blas.Upper) {
+							want = 1
+						}
+						if got := square.data[i*n+j]; got != want {
+							t.Fatalf("%s, %c, n=%d: element (%d, %d) is covered %v times", kn.name, ul, n, i, j, got)
+						}
 					}
 				}
 			}
-			for _, b := range diagonal {
-				if b.row != b.column || b.rows != b.columns || b.rows > diagonalMost {
-					t.Fatalf("n=%d: %+v on the diagonal", n, b)
+		}
+	}
+}
+
+// What a part of a triangle says of itself is what its elements say.
+func TestPartsOfTriangles(t *testing.T) {
+	r := rand.New(rand.NewPCG(3, 4))
+	for range 2000 {
+		n := 1 + r.IntN(20)
+		ul := pick(r, triangles...)
+		b := block{row: r.IntN(n), column: r.IntN(n)}
+		b.rows, b.columns = 1+r.IntN(n-b.row), 1+r.IntN(n-b.column)
+		part := matrix{rows: n, columns: n, data: make([]float64, n*n), stride: n, only: ul}.part(b)
+		belong := 0
+		for i := range b.rows {
+			from, to := part.span(i)
+			for j := range b.columns {
+				row, column := b.row+i, b.column+j
+				in := row == column || column > row == (ul == blas.Upper)
+				if in {
+					belong++
+				}
+				if in != (from <= j && j < to) {
+					t.Fatalf("%c, n=%d, %+v: row %d spans %d to %d", ul, n, b, i, from, to)
 				}
 			}
-			for i := range n {
-				line := inTriangle(ul, i, n)
-				for j := range n {
-					in := j >= line.column && j < line.column+line.columns
-					if in && times[i*n+j] != 1 || times[i*n+j] > 1 {
-						t.Fatalf("%c, n=%d: element (%d, %d) is covered %d times", ul, n, i, j, times[i*n+j])
-					}
-				}
-			}
+		}
+		if part.empty() != (belong == 0) || part.whole() != (belong == b.rows*b.columns) {
+			t.Fatalf("%c, n=%d, %+v: %d elements belong, empty %v, whole %v", ul, n, b, belong, part.empty(), part.whole())
 		}
 	}
 }

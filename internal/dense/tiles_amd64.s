@@ -5,21 +5,24 @@
 #include "textflag.h"
 
 // func avx2Tile1x8(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, FMA3
+// Requires: AVX, FMA3, MMX+
 TEXT ·avx2Tile1x8(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VXORPD Y0, Y0, Y0
-	VXORPD Y1, Y1, Y1
-	MOVQ   AX, DI
-	SHRQ   $0x02, DI
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VXORPD     Y0, Y0, Y0
+	VXORPD     Y1, Y1, Y1
+	MOVQ       SI, DI
+	PREFETCHT0 (DI)
+	PREFETCHT0 32(DI)
+	MOVQ       AX, DI
+	SHRQ       $0x02, DI
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Y2
@@ -74,23 +77,29 @@ store:
 	RET
 
 // func avx2Tile2x8(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, FMA3
+// Requires: AVX, FMA3, MMX+
 TEXT ·avx2Tile2x8(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VXORPD Y0, Y0, Y0
-	VXORPD Y1, Y1, Y1
-	VXORPD Y2, Y2, Y2
-	VXORPD Y3, Y3, Y3
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VXORPD     Y0, Y0, Y0
+	VXORPD     Y1, Y1, Y1
+	VXORPD     Y2, Y2, Y2
+	VXORPD     Y3, Y3, Y3
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Y4
@@ -165,25 +174,34 @@ store:
 	RET
 
 // func avx2Tile3x8(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, FMA3
+// Requires: AVX, FMA3, MMX+
 TEXT ·avx2Tile3x8(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VXORPD Y0, Y0, Y0
-	VXORPD Y1, Y1, Y1
-	VXORPD Y2, Y2, Y2
-	VXORPD Y3, Y3, Y3
-	VXORPD Y4, Y4, Y4
-	VXORPD Y5, Y5, Y5
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VXORPD     Y0, Y0, Y0
+	VXORPD     Y1, Y1, Y1
+	VXORPD     Y2, Y2, Y2
+	VXORPD     Y3, Y3, Y3
+	VXORPD     Y4, Y4, Y4
+	VXORPD     Y5, Y5, Y5
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Y6
@@ -278,27 +296,39 @@ store:
 	RET
 
 // func avx2Tile4x8(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, FMA3
+// Requires: AVX, FMA3, MMX+
 TEXT ·avx2Tile4x8(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VXORPD Y0, Y0, Y0
-	VXORPD Y1, Y1, Y1
-	VXORPD Y2, Y2, Y2
-	VXORPD Y3, Y3, Y3
-	VXORPD Y4, Y4, Y4
-	VXORPD Y5, Y5, Y5
-	VXORPD Y6, Y6, Y6
-	VXORPD Y7, Y7, Y7
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VXORPD     Y0, Y0, Y0
+	VXORPD     Y1, Y1, Y1
+	VXORPD     Y2, Y2, Y2
+	VXORPD     Y3, Y3, Y3
+	VXORPD     Y4, Y4, Y4
+	VXORPD     Y5, Y5, Y5
+	VXORPD     Y6, Y6, Y6
+	VXORPD     Y7, Y7, Y7
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Y8
@@ -413,29 +443,44 @@ store:
 	RET
 
 // func avx2Tile5x8(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, FMA3
+// Requires: AVX, FMA3, MMX+
 TEXT ·avx2Tile5x8(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VXORPD Y0, Y0, Y0
-	VXORPD Y1, Y1, Y1
-	VXORPD Y2, Y2, Y2
-	VXORPD Y3, Y3, Y3
-	VXORPD Y4, Y4, Y4
-	VXORPD Y5, Y5, Y5
-	VXORPD Y6, Y6, Y6
-	VXORPD Y7, Y7, Y7
-	VXORPD Y8, Y8, Y8
-	VXORPD Y9, Y9, Y9
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VXORPD     Y0, Y0, Y0
+	VXORPD     Y1, Y1, Y1
+	VXORPD     Y2, Y2, Y2
+	VXORPD     Y3, Y3, Y3
+	VXORPD     Y4, Y4, Y4
+	VXORPD     Y5, Y5, Y5
+	VXORPD     Y6, Y6, Y6
+	VXORPD     Y7, Y7, Y7
+	VXORPD     Y8, Y8, Y8
+	VXORPD     Y9, Y9, Y9
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Y10
@@ -570,31 +615,49 @@ store:
 	RET
 
 // func avx2Tile6x8(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, FMA3
+// Requires: AVX, FMA3, MMX+
 TEXT ·avx2Tile6x8(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VXORPD Y0, Y0, Y0
-	VXORPD Y1, Y1, Y1
-	VXORPD Y2, Y2, Y2
-	VXORPD Y3, Y3, Y3
-	VXORPD Y4, Y4, Y4
-	VXORPD Y5, Y5, Y5
-	VXORPD Y6, Y6, Y6
-	VXORPD Y7, Y7, Y7
-	VXORPD Y8, Y8, Y8
-	VXORPD Y9, Y9, Y9
-	VXORPD Y10, Y10, Y10
-	VXORPD Y11, Y11, Y11
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VXORPD     Y0, Y0, Y0
+	VXORPD     Y1, Y1, Y1
+	VXORPD     Y2, Y2, Y2
+	VXORPD     Y3, Y3, Y3
+	VXORPD     Y4, Y4, Y4
+	VXORPD     Y5, Y5, Y5
+	VXORPD     Y6, Y6, Y6
+	VXORPD     Y7, Y7, Y7
+	VXORPD     Y8, Y8, Y8
+	VXORPD     Y9, Y9, Y9
+	VXORPD     Y10, Y10, Y10
+	VXORPD     Y11, Y11, Y11
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 32(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Y12
@@ -749,21 +812,24 @@ store:
 	RET
 
 // func avx512Tile1x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile1x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	MOVQ   AX, DI
-	SHRQ   $0x02, DI
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	MOVQ       SI, DI
+	PREFETCHT0 (DI)
+	PREFETCHT0 64(DI)
+	MOVQ       AX, DI
+	SHRQ       $0x02, DI
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z2
@@ -818,23 +884,29 @@ store:
 	RET
 
 // func avx512Tile2x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile2x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z4
@@ -909,25 +981,34 @@ store:
 	RET
 
 // func avx512Tile3x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile3x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z6
@@ -1022,27 +1103,39 @@ store:
 	RET
 
 // func avx512Tile4x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile4x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z8
@@ -1157,29 +1250,44 @@ store:
 	RET
 
 // func avx512Tile5x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile5x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	VPXORQ Z8, Z8, Z8
-	VPXORQ Z9, Z9, Z9
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	VPXORQ     Z8, Z8, Z8
+	VPXORQ     Z9, Z9, Z9
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z10
@@ -1314,31 +1422,49 @@ store:
 	RET
 
 // func avx512Tile6x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile6x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	VPXORQ Z8, Z8, Z8
-	VPXORQ Z9, Z9, Z9
-	VPXORQ Z10, Z10, Z10
-	VPXORQ Z11, Z11, Z11
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	VPXORQ     Z8, Z8, Z8
+	VPXORQ     Z9, Z9, Z9
+	VPXORQ     Z10, Z10, Z10
+	VPXORQ     Z11, Z11, Z11
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z12
@@ -1493,33 +1619,54 @@ store:
 	RET
 
 // func avx512Tile7x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile7x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	VPXORQ Z8, Z8, Z8
-	VPXORQ Z9, Z9, Z9
-	VPXORQ Z10, Z10, Z10
-	VPXORQ Z11, Z11, Z11
-	VPXORQ Z12, Z12, Z12
-	VPXORQ Z13, Z13, Z13
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	VPXORQ     Z8, Z8, Z8
+	VPXORQ     Z9, Z9, Z9
+	VPXORQ     Z10, Z10, Z10
+	VPXORQ     Z11, Z11, Z11
+	VPXORQ     Z12, Z12, Z12
+	VPXORQ     Z13, Z13, Z13
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z14
@@ -1694,35 +1841,59 @@ store:
 	RET
 
 // func avx512Tile8x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile8x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	VPXORQ Z8, Z8, Z8
-	VPXORQ Z9, Z9, Z9
-	VPXORQ Z10, Z10, Z10
-	VPXORQ Z11, Z11, Z11
-	VPXORQ Z12, Z12, Z12
-	VPXORQ Z13, Z13, Z13
-	VPXORQ Z14, Z14, Z14
-	VPXORQ Z15, Z15, Z15
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	VPXORQ     Z8, Z8, Z8
+	VPXORQ     Z9, Z9, Z9
+	VPXORQ     Z10, Z10, Z10
+	VPXORQ     Z11, Z11, Z11
+	VPXORQ     Z12, Z12, Z12
+	VPXORQ     Z13, Z13, Z13
+	VPXORQ     Z14, Z14, Z14
+	VPXORQ     Z15, Z15, Z15
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z16
@@ -1917,37 +2088,64 @@ store:
 	RET
 
 // func avx512Tile9x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile9x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	VPXORQ Z8, Z8, Z8
-	VPXORQ Z9, Z9, Z9
-	VPXORQ Z10, Z10, Z10
-	VPXORQ Z11, Z11, Z11
-	VPXORQ Z12, Z12, Z12
-	VPXORQ Z13, Z13, Z13
-	VPXORQ Z14, Z14, Z14
-	VPXORQ Z15, Z15, Z15
-	VPXORQ Z16, Z16, Z16
-	VPXORQ Z17, Z17, Z17
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	VPXORQ     Z8, Z8, Z8
+	VPXORQ     Z9, Z9, Z9
+	VPXORQ     Z10, Z10, Z10
+	VPXORQ     Z11, Z11, Z11
+	VPXORQ     Z12, Z12, Z12
+	VPXORQ     Z13, Z13, Z13
+	VPXORQ     Z14, Z14, Z14
+	VPXORQ     Z15, Z15, Z15
+	VPXORQ     Z16, Z16, Z16
+	VPXORQ     Z17, Z17, Z17
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z18
@@ -2162,39 +2360,69 @@ store:
 	RET
 
 // func avx512Tile10x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile10x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	VPXORQ Z8, Z8, Z8
-	VPXORQ Z9, Z9, Z9
-	VPXORQ Z10, Z10, Z10
-	VPXORQ Z11, Z11, Z11
-	VPXORQ Z12, Z12, Z12
-	VPXORQ Z13, Z13, Z13
-	VPXORQ Z14, Z14, Z14
-	VPXORQ Z15, Z15, Z15
-	VPXORQ Z16, Z16, Z16
-	VPXORQ Z17, Z17, Z17
-	VPXORQ Z18, Z18, Z18
-	VPXORQ Z19, Z19, Z19
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	VPXORQ     Z8, Z8, Z8
+	VPXORQ     Z9, Z9, Z9
+	VPXORQ     Z10, Z10, Z10
+	VPXORQ     Z11, Z11, Z11
+	VPXORQ     Z12, Z12, Z12
+	VPXORQ     Z13, Z13, Z13
+	VPXORQ     Z14, Z14, Z14
+	VPXORQ     Z15, Z15, Z15
+	VPXORQ     Z16, Z16, Z16
+	VPXORQ     Z17, Z17, Z17
+	VPXORQ     Z18, Z18, Z18
+	VPXORQ     Z19, Z19, Z19
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z20
@@ -2429,41 +2657,74 @@ store:
 	RET
 
 // func avx512Tile11x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile11x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	VPXORQ Z8, Z8, Z8
-	VPXORQ Z9, Z9, Z9
-	VPXORQ Z10, Z10, Z10
-	VPXORQ Z11, Z11, Z11
-	VPXORQ Z12, Z12, Z12
-	VPXORQ Z13, Z13, Z13
-	VPXORQ Z14, Z14, Z14
-	VPXORQ Z15, Z15, Z15
-	VPXORQ Z16, Z16, Z16
-	VPXORQ Z17, Z17, Z17
-	VPXORQ Z18, Z18, Z18
-	VPXORQ Z19, Z19, Z19
-	VPXORQ Z20, Z20, Z20
-	VPXORQ Z21, Z21, Z21
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	VPXORQ     Z8, Z8, Z8
+	VPXORQ     Z9, Z9, Z9
+	VPXORQ     Z10, Z10, Z10
+	VPXORQ     Z11, Z11, Z11
+	VPXORQ     Z12, Z12, Z12
+	VPXORQ     Z13, Z13, Z13
+	VPXORQ     Z14, Z14, Z14
+	VPXORQ     Z15, Z15, Z15
+	VPXORQ     Z16, Z16, Z16
+	VPXORQ     Z17, Z17, Z17
+	VPXORQ     Z18, Z18, Z18
+	VPXORQ     Z19, Z19, Z19
+	VPXORQ     Z20, Z20, Z20
+	VPXORQ     Z21, Z21, Z21
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z22
@@ -2718,43 +2979,79 @@ store:
 	RET
 
 // func avx512Tile12x16(depth int, a *float64, b *float64, bStride int, c *float64, cStride int)
-// Requires: AVX, AVX512F
+// Requires: AVX, AVX512F, MMX+
 TEXT ·avx512Tile12x16(SB), NOSPLIT, $0-48
-	MOVQ   depth+0(FP), AX
-	MOVQ   a+8(FP), CX
-	MOVQ   b+16(FP), DX
-	MOVQ   bStride+24(FP), BX
-	MOVQ   c+32(FP), SI
-	MOVQ   cStride+40(FP), DI
-	SHLQ   $0x03, BX
-	SHLQ   $0x03, DI
-	VPXORQ Z0, Z0, Z0
-	VPXORQ Z1, Z1, Z1
-	VPXORQ Z2, Z2, Z2
-	VPXORQ Z3, Z3, Z3
-	VPXORQ Z4, Z4, Z4
-	VPXORQ Z5, Z5, Z5
-	VPXORQ Z6, Z6, Z6
-	VPXORQ Z7, Z7, Z7
-	VPXORQ Z8, Z8, Z8
-	VPXORQ Z9, Z9, Z9
-	VPXORQ Z10, Z10, Z10
-	VPXORQ Z11, Z11, Z11
-	VPXORQ Z12, Z12, Z12
-	VPXORQ Z13, Z13, Z13
-	VPXORQ Z14, Z14, Z14
-	VPXORQ Z15, Z15, Z15
-	VPXORQ Z16, Z16, Z16
-	VPXORQ Z17, Z17, Z17
-	VPXORQ Z18, Z18, Z18
-	VPXORQ Z19, Z19, Z19
-	VPXORQ Z20, Z20, Z20
-	VPXORQ Z21, Z21, Z21
-	VPXORQ Z22, Z22, Z22
-	VPXORQ Z23, Z23, Z23
-	MOVQ   AX, R8
-	SHRQ   $0x02, R8
-	JZ     rest
+	MOVQ       depth+0(FP), AX
+	MOVQ       a+8(FP), CX
+	MOVQ       b+16(FP), DX
+	MOVQ       bStride+24(FP), BX
+	MOVQ       c+32(FP), SI
+	MOVQ       cStride+40(FP), DI
+	SHLQ       $0x03, BX
+	SHLQ       $0x03, DI
+	VPXORQ     Z0, Z0, Z0
+	VPXORQ     Z1, Z1, Z1
+	VPXORQ     Z2, Z2, Z2
+	VPXORQ     Z3, Z3, Z3
+	VPXORQ     Z4, Z4, Z4
+	VPXORQ     Z5, Z5, Z5
+	VPXORQ     Z6, Z6, Z6
+	VPXORQ     Z7, Z7, Z7
+	VPXORQ     Z8, Z8, Z8
+	VPXORQ     Z9, Z9, Z9
+	VPXORQ     Z10, Z10, Z10
+	VPXORQ     Z11, Z11, Z11
+	VPXORQ     Z12, Z12, Z12
+	VPXORQ     Z13, Z13, Z13
+	VPXORQ     Z14, Z14, Z14
+	VPXORQ     Z15, Z15, Z15
+	VPXORQ     Z16, Z16, Z16
+	VPXORQ     Z17, Z17, Z17
+	VPXORQ     Z18, Z18, Z18
+	VPXORQ     Z19, Z19, Z19
+	VPXORQ     Z20, Z20, Z20
+	VPXORQ     Z21, Z21, Z21
+	VPXORQ     Z22, Z22, Z22
+	VPXORQ     Z23, Z23, Z23
+	MOVQ       SI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	ADDQ       DI, R8
+	PREFETCHT0 (R8)
+	PREFETCHT0 64(R8)
+	MOVQ       AX, R8
+	SHRQ       $0x02, R8
+	JZ         rest
 
 round:
 	VMOVUPD      (DX), Z24

@@ -4,9 +4,12 @@ import "gonum.org/v1/gonum/blas"
 
 const (
 	// triangleMost is up to which size gonum solves a triangular system itself.
-	triangleMost = 24
+	triangleMost = 12
 	// triangleUnit divides larger triangles at whole tiles.
 	triangleUnit = 12
+	// turnedMost is how many systems of the right side are transposed at a
+	// time: whole tiles, and no power of two, which would crowd the cache.
+	turnedMost = 240
 )
 
 // triangle is a triangular matrix as the coefficient of a system.
@@ -22,6 +25,16 @@ type triangle struct {
 // lower reports whether the matrix is lower triangular once it is transposed
 // as asked.
 func (t triangle) lower() bool { return (t.uplo == blas.Lower) == (t.trans == blas.NoTrans) }
+
+// transposed returns the triangle whose coefficients are those of t transposed.
+func (t triangle) transposed() triangle {
+	if t.trans == blas.NoTrans {
+		t.trans = blas.Trans
+	} else {
+		t.trans = blas.NoTrans
+	}
+	return t
+}
 
 // halves returns the two triangles on the diagonal and the square beside them,
 // as a factor.
@@ -53,9 +66,9 @@ func (im implementation) Dtrsm(side blas.Side, ul blas.Uplo, tA blas.Transpose, 
 	}
 	checkCount("m", m)
 	checkCount("n", n)
-	size, systems, unit := m, n, im.kernel.width
+	size, systems := m, n
 	if side == blas.Right {
-		size, systems, unit = n, m, im.kernel.height()
+		size, systems = n, m
 	}
 	checkStride("A", lda, size)
 	checkStride("B", ldb, n)
@@ -65,27 +78,36 @@ func (im implementation) Dtrsm(side blas.Side, ul blas.Uplo, tA blas.Transpose, 
 	checkLength("a", a, size, size, lda)
 	checkLength("b", b, m, n, ldb)
 	if alpha == 0 {
-		matrix{m, n, b, ldb}.scale(0)
+		matrix{rows: m, columns: n, data: b, stride: ldb}.scale(0)
 		return
 	}
 
-	t, x := triangle{size, a, lda, ul, tA, d}, matrix{m, n, b, ldb}
+	t, x := triangle{size, a, lda, ul, tA, d}, matrix{rows: m, columns: n, data: b, stride: ldb}
 	threads := im.workers(m * n * size / 2)
-	each := roundUp(ceilDiv(systems, threads), unit)
+	each := roundUp(ceilDiv(systems, threads), im.kernel.width)
+	if side == blas.Right {
+		// X * op(A) = alpha * B is op(A)ᵀ * Xᵀ = alpha * Bᵀ.
+		t = t.transposed()
+		each = min(each, turnedMost)
+	}
 	share(ceilDiv(systems, each), threads, func(s *scratch, i int) {
 		first, count := i*each, min(each, systems-i*each)
 		if side == blas.Left {
-			im.solveLeft(t, alpha, x.part(block{0, first, m, count}), s)
-		} else {
-			im.solveRight(t, alpha, x.part(block{first, 0, count, n}), s)
+			im.solve(t, alpha, x.part(block{0, first, m, count}), s)
+			return
 		}
+		rows := x.part(block{first, 0, count, n})
+		turned := matrix{rows: n, columns: count, data: grow(&s.turned, n*count), stride: count}
+		packAlong(turned.data, rows.data, rows.stride, n, count, count)
+		im.solve(t, alpha, turned, s)
+		unpackAlong(rows.data, turned.data, rows.stride, n, count)
 	})
 }
 
-// solveLeft solves t * X = alpha * B, where x holds B and then X. The half of
+// solve solves t * X = alpha * B, where x holds B and then X. The half of
 // the unknowns that stands alone in its equations is solved for first and put
 // into the equations of the other.
-func (im implementation) solveLeft(t triangle, alpha float64, x matrix, s *scratch) {
+func (im implementation) solve(t triangle, alpha float64, x matrix, s *scratch) {
 	if t.size <= triangleMost {
 		im.Implementation.Dtrsm(blas.Left, t.uplo, t.trans, t.diag, x.rows, x.columns, alpha, t.data, t.stride, x.data, x.stride)
 		return
@@ -97,31 +119,10 @@ func (im implementation) solveLeft(t triangle, alpha float64, x matrix, s *scrat
 		first, second = second, first
 		known, other = other, known
 	}
-	im.solveLeft(first, alpha, known, s)
+	im.solve(first, alpha, known, s)
 	product{
 		alpha: -1, a: beside, b: operand{known.data, known.stride, false},
 		k: known.rows, beta: alpha, c: other,
 	}.compute(im.kernel, s)
-	im.solveLeft(second, 1, other, s)
-}
-
-// solveRight solves X * t = alpha * B as solveLeft does.
-func (im implementation) solveRight(t triangle, alpha float64, x matrix, s *scratch) {
-	if t.size <= triangleMost {
-		im.Implementation.Dtrsm(blas.Right, t.uplo, t.trans, t.diag, x.rows, x.columns, alpha, t.data, t.stride, x.data, x.stride)
-		return
-	}
-	first, second, beside := t.halves()
-	known := x.part(block{0, 0, x.rows, first.size})
-	other := x.part(block{0, first.size, x.rows, second.size})
-	if t.lower() {
-		first, second = second, first
-		known, other = other, known
-	}
-	im.solveRight(first, alpha, known, s)
-	product{
-		alpha: -1, a: operand{known.data, known.stride, false}, b: beside,
-		k: known.columns, beta: alpha, c: other,
-	}.compute(im.kernel, s)
-	im.solveRight(second, 1, other, s)
+	im.solve(second, 1, other, s)
 }

@@ -102,7 +102,7 @@ func eachSystem(m, n int, r *rand.Rand, do func(s system)) {
 // agrees with gonum, and has the same bits for all kernels and thread counts.
 func TestDtrsm(t *testing.T) {
 	r := rand.New(rand.NewPCG(1, 2))
-	for _, shape := range [][2]int{{1, 1}, {24, 25}, {25, 24}, {50, 33}, {33, 130}, {130, 40}} {
+	for _, shape := range [][2]int{{1, 1}, {24, 25}, {25, 24}, {50, 33}, {33, 130}, {130, 40}, {500, 20}} {
 		eachSystem(shape[0], shape[1], r, func(s system) {
 			a := slices.Clone(s.a)
 			plain := s.by(gonum.Implementation{})

@@ -92,6 +92,18 @@ func tile(s set, rows int) {
 		}
 	}
 
+	// C is needed when the sums are done: ask for it now.
+	ahead := GP64()
+	MOVQ(c, ahead)
+	for i := range rows {
+		for j := range vectors {
+			PREFETCHT0(Mem{Base: ahead, Disp: j * s.lanes * bytes})
+		}
+		if i < rows-1 {
+			ADDQ(cStride, ahead)
+		}
+	}
+
 	rounds := GP64()
 	MOVQ(depth, rounds)
 	SHRQ(Imm(2), rounds) // depth / unroll
