@@ -61,3 +61,44 @@ func TestColoursTellRelationsApart(t *testing.T) {
 		t.Errorf("members of two marks have colours %x, %v", c.of, err)
 	}
 }
+
+// The exact checks behind the colours, which a collision of hashes would leave
+// as the only ones.
+func TestExactChecks(t *testing.T) {
+	// Two twins and a parent of one code down and another up.
+	kin := newShape(3, []int{
+		0, 1, 4,
+		1, 0, 4,
+		5, 5, 0,
+	}, []int{0, 0, 0})
+	marked := newShape(3, kin.relation, []int{0, 7, 0})
+	for _, c := range []struct {
+		name  string
+		a, b  *shape
+		to    []int
+		wants bool
+	}{
+		{"nobody moves", kin, kin, []int{0, 1, 2}, true},
+		{"twins trade places", kin, kin, []int{1, 0, 2}, true},
+		{"twin and parent trade places", kin, kin, []int{2, 1, 0}, false},
+		{"one comes twice", kin, kin, []int{0, 0, 2}, false},
+		{"marks differ", kin, marked, []int{0, 1, 2}, false},
+		{"marks move", marked, marked, []int{1, 0, 2}, false},
+	} {
+		if got := c.a.carries(c.to, c.b); got != c.wants {
+			t.Errorf("%s: carries is %v", c.name, got)
+		}
+	}
+	if !kin.changePlaces(0, 1) || kin.changePlaces(0, 2) || marked.changePlaces(0, 1) {
+		t.Error("who may change places is wrong")
+	}
+	elder := newShape(2, []int{0, 1, 2, 0}, []int{0, 0})
+	if elder.changePlaces(0, 1) {
+		t.Error("two who see each other differently change places")
+	}
+	// A map is refused when it does not take the base where it was sent.
+	m := matcher{path: &path{shape: kin, base: []int{0}}, other: kin, image: []int{1}}
+	if !m.keepsImages([]int{1, 0, 2}) || m.keepsImages([]int{0, 1, 2}) {
+		t.Error("images of the base are not kept")
+	}
+}
