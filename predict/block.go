@@ -36,6 +36,7 @@ type block struct {
 	whole          blas64.General // z and c of the outer fold
 	z, v, u, terms blas64.General // of an inner fold
 	errors         blas64.General // penalties x width, without the squares of y
+	least          []float64      // of each column's errors
 
 	out     outcome
 	moments moments

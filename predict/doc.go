@@ -28,6 +28,10 @@
 // measure that is constant in the training set, or of which the confounds
 // leave less than 1e-10 of its deviation, has weight 0 there.
 //
+// A measure may be on a scale that is learnt from people (ranks, states found
+// in recordings): Options.Scalers and NewLearnedDesign learn it from each
+// training set anew.
+//
 // # The nested procedure
 //
 // For each outer fold the penalty with the least mean, over inner folds, of
@@ -46,7 +50,8 @@
 // partial fractions (see type spectrum). Sums over the people of folds are
 // made once a fold, or once a cell where inner folds are made of shared cells.
 // With more measures than training people the n x n products of people take
-// the place of those of measures.
+// the place of those of measures. Learnt measures have no such sums in common:
+// they go by the rows of people and cost more.
 //
 // Columns are independent and every sum has one order: results are the same,
 // bit for bit, for any number of workers. Decompositions beyond 48 MB are made

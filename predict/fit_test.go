@@ -6,6 +6,8 @@ import (
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
+
+	"kindwell/internal/stream"
 )
 
 func shapes() map[string]shape {
@@ -92,5 +94,65 @@ func TestFitAgainstTextbook(t *testing.T) {
 				}
 			}
 		})
+	}
+}
+
+// Units and origins of measures, confounds and traits, and the order of the
+// people, change predictions by nothing but their unit.
+func TestUnitsAndOrderDoNotMatter(t *testing.T) {
+	for _, name := range []string{"given folds", "missing cells", "wide"} {
+		s := shapes()[name]
+		q := invent(s, 9)
+		want, err := q.design(t, Options{}).Fit(context.Background(), q.traits)
+		if err != nil {
+			t.Fatal(err)
+		}
+		place := make([]int, s.people) // person of each row
+		stream.New(1, "test order").PermTo(place)
+		other := invent(s, 9)
+		for i, person := range place {
+			for j := range s.measures {
+				other.measures.Set(i, j, 1e5+math.Pow(10, float64(j%7-3))*q.measures.At(person, j))
+			}
+			for j := range s.confounds {
+				other.confounds.Set(i, j, -40+1e-3*q.confounds.At(person, j))
+			}
+			for j := range s.traits {
+				other.traits.Set(i, j, 1e4-250*q.traits.At(person, j))
+			}
+			for r := range q.folds.Repeats {
+				from, to := &q.folds.Repeats[r], &other.folds.Repeats[r]
+				to.Outer[i] = from.Outer[person]
+				for o := range from.Inner {
+					to.Inner[o][i] = from.Inner[o][person]
+				}
+				if from.Cell != nil {
+					to.Cell[i] = from.Cell[person]
+				}
+			}
+		}
+		got, err := other.design(t, Options{}).Fit(context.Background(), other.traits)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for r := range want.Repeats {
+			for j := range s.traits {
+				for i, person := range place {
+					if a, b := got.Repeats[r].Predicted.At(i, j)/-250, want.Repeats[r].Predicted.At(person, j); !near(a, b, 1e-7) {
+						t.Fatalf("%s: person %d is predicted %v, in other units %v", name, person, b, a)
+					}
+				}
+				for o := range want.Repeats[r].Choices {
+					if a, b := got.Repeats[r].Choices[o][j].Penalty, want.Repeats[r].Choices[o][j].Penalty; a != b {
+						t.Errorf("%s: penalty %v, in other units %v", name, b, a)
+					}
+				}
+				for k, a := range got.Scores[j] {
+					if b := want.Scores[j][k]; a.Metric == R && !near(a.Value, b.Value, 1e-7) {
+						t.Errorf("%s: r %v, in other units %v", name, b.Value, a.Value)
+					}
+				}
+			}
+		}
 	}
 }

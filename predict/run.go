@@ -134,7 +134,7 @@ func (d *Design) newBlock(l *layout, sources *sources, folds []*fold, width int,
 	}
 	r := d.directions()
 	b.whole, b.z, b.v, b.u, b.terms = table(r), table(r), table(r), table(r), table(2*r)
-	b.total = make([]float64, width)
+	b.total, b.least = make([]float64, width), make([]float64, width)
 	b.out = outcome{
 		choice: make([]int, width), mse: make([]float64, width), constant: make([]bool, width),
 		sum: make([]float64, width), square: make([]float64, width), b: table(r - k),
@@ -186,7 +186,7 @@ func (b *block) resize(first, width int) {
 			again(&b.cells[i].sums[c])
 		}
 	}
-	b.total = b.total[:width]
+	b.total, b.least = b.total[:width], b.least[:width]
 	b.out.choice, b.out.mse, b.out.constant = b.out.choice[:width], b.out.mse[:width], b.out.constant[:width]
 	b.out.sum, b.out.square = b.out.sum[:width], b.out.square[:width]
 }

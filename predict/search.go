@@ -117,14 +117,18 @@ func (b *block) closeTerms(in *innerFold) blas64.General {
 // the comparison, where it would only eat digits, but what sameError is
 // relative to.
 func (b *block) choose(constant []float64, folds int) {
-	penalties := b.errors.Rows
-	for c := range b.width {
-		least := b.errors.Data[c]
-		for l := 1; l < penalties; l++ {
-			least = math.Min(least, b.errors.Data[l*b.width+c])
+	last := b.errors.Rows - 1
+	copy(b.least, row(b.errors, 0))
+	for l := 1; l <= last; l++ {
+		for c, e := range row(b.errors, l) {
+			if e < b.least[c] {
+				b.least[c] = e
+			}
 		}
-		within := least + sameError*math.Max(0, constant[c]+least)
-		l := penalties - 1
+	}
+	for c, least := range b.least {
+		within := least + sameError*max(0, constant[c]+least)
+		l := last
 		for l > 0 && !b.out.constant[c] && !(b.errors.Data[l*b.width+c] <= within) {
 			l--
 		}
