@@ -267,6 +267,7 @@ func TestMarksAndLineEnds(t *testing.T) {
 		"old Mac":         strings.ReplaceAll(minimal, "\n", "\r"),
 		"document marks":  "---\n" + minimal + "...\n",
 		"comments":        "# a\n\n" + minimal + "\n# b\n",
+		"harmless tabs":   strings.ReplaceAll(minimal, "\n", "\t\n\t\n") + "\t# a\tb\n",
 		"no end":          strings.TrimRight(minimal, "\n"),
 		"one section":     "{kindwell: 1, seed: 7, people: {file: people.csv}, measures: {file: dynamics.csv, states_learned_on: no_states}, traits: {file: mood.csv, use: [wellbeing]}}",
 		"seed in limits":  strings.Replace(minimal, "seed: 7", "seed: +7", 1),

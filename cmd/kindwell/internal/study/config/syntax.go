@@ -31,7 +31,12 @@ func read(file string, data []byte) (*source, *node, Faults) {
 		faults.Add(src.position(fault.at), fault.message, fault.advice)
 		return src, nil, faults
 	}
-	tokens := lexer.Tokenize(text)
+	// The parser loses tabs inside text and then counts columns wrongly. It
+	// gets spaces instead, and tabs that could matter are refused.
+	tokens := lexer.Tokenize(strings.ReplaceAll(text, "\t", " "))
+	if faults = strayTabs(src, tokens); len(faults) > 0 {
+		return src, nil, faults
+	}
 	if at, deep := tooDeep(tokens); deep {
 		faults.Add(src.position(at), "lists and sections are nested too deep", "a study file needs no more than a few levels")
 		return src, nil, faults
@@ -101,6 +106,34 @@ func cleanText(data []byte) (string, *textFault) {
 		}
 	}
 	return text, nil
+}
+
+// strayTabs reports, once a line, tabs that are neither in a comment nor at
+// the end of what a line says.
+func strayTabs(src *source, tokens token.Tokens) Faults {
+	comments := map[int]int{} // column by line
+	for _, t := range tokens {
+		if t.Type == token.CommentType {
+			p := placeOf(t)
+			comments[p.line] = p.column
+		}
+	}
+	var faults Faults
+	for i, line := range src.lines {
+		if !strings.Contains(line, "\t") {
+			continue
+		}
+		runes := []rune(line)
+		if column, ok := comments[i+1]; ok {
+			runes = runes[:min(max(column-1, 0), len(runes))]
+		}
+		said := strings.TrimRight(string(runes), " \t")
+		if before, _, found := strings.Cut(said, "\t"); found {
+			faults.Add(src.position(place{i + 1, utf8.RuneCountInString(before) + 1}),
+				"a tab stands where spaces should", "write spaces")
+		}
+	}
+	return faults
 }
 
 // refusedTokens reports what YAML allows and a study file does not: a second
@@ -222,10 +255,6 @@ var syntaxMessages = [...]struct {
 }{
 	{part: "mapping value is not allowed", next: true,
 		message: "`: ` stands inside a value", advice: "one key a line; text that holds `: ` needs quotes"},
-	{part: "that cannot start any token",
-		message: "a tab stands where spaces should", advice: "indent with spaces"},
-	{part: "tab character cannot",
-		message: "a tab stands where spaces should", advice: "indent with spaces"},
 	{part: "quoted text",
 		message: "the quote that opens here is never closed", advice: "close it, or write the text without quotes"},
 	{part: "flow mapping end token", message: "the `{` that opens here is never closed", advice: "close it with `}`"},
