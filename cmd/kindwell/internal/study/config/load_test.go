@@ -191,6 +191,28 @@ output: {spreadsheet_safe: false}
 	}
 }
 
+// TestTruthValues reads true and false where a later version will ask for
+// them.
+func TestTruthValues(t *testing.T) {
+	for text, want := range map[string]string{
+		"true": "", "false": "",
+		`"true"`: "`heritability.repeated` must be true or false, found the text \"true\"; write `true`",
+		"yes":    "`heritability.repeated` must be true or false, found the text \"yes\"; write `true`",
+		"Off":    "`heritability.repeated` must be true or false, found the text \"Off\"; write `false`",
+		"1":      "`heritability.repeated` must be true or false, found 1; write `true`",
+		"maybe":  "`heritability.repeated` must be true or false, found the text \"maybe\"; ",
+	} {
+		study, faults := parse("study.yaml", []byte(minimal+"heritability: {repeated: "+text+"}\n"), true)
+		got := ""
+		if len(faults) == 1 {
+			got = faults[0].Message + "; " + faults[0].Advice
+		}
+		if got != want || len(faults) > 1 || want == "" && study.Heritability.Repeated != (text == "true") {
+			t.Errorf("%s: %q", text, faults)
+		}
+	}
+}
+
 func TestDefaultsThatFollow(t *testing.T) {
 	base := "kindwell: 1\nseed: 7\npeople: {file: p.csv}\n"
 	measures := "measures: {file: d.csv, states_learned_on: no_states}\n"
@@ -275,8 +297,11 @@ func TestMarksAndLineEnds(t *testing.T) {
 		if diff := cmp.Diff(want, mustParse(t, text), inGo); diff != "" {
 			t.Errorf("%s: %s", name, diff)
 		}
-		if got := messages(t, text+"\nbad: 1"); name != "document marks" && name != "one section" && len(got) != 1 {
-			t.Errorf("%s: faults %q", name, got)
+	}
+	for _, end := range []string{"\n", "\r\n", "\r"} {
+		got := messages(t, strings.ReplaceAll(minimal+"\nbad: 1\n", "\n", end))
+		if want := []string{"7:1: unknown key `bad` at the top of the file"}; !cmp.Equal(got, want) {
+			t.Errorf("line end %q: %q", end, got)
 		}
 	}
 	big := mustParse(t, strings.Replace(minimal, "seed: 7", "seed: 9223372036854775807", 1))

@@ -26,7 +26,8 @@ the tables and runs nothing.
 
 - Needed are ` + "`kindwell`, `seed`, `people`" + ` and one of ` + "`measures`" + ` and ` + "`traits`" + `. A section that is
   absent (` + "`predict`, `heritability`" + `) is an analysis that is not run.
-- Files are relative to the folder of the study file, unless their names are absolute.
+- Files and the folder of the results are relative to the folder of the study file, unless
+  their names are absolute.
 - Text is taken as it is written: a column ` + "`007`" + ` needs no quotes. Text that begins with
   one of ` + "`* & ! % @ [ {`" + ` or holds ` + "`: `" + ` needs them.
 - Unknown keys, wrong types and values out of range are refused, all at once, each with

@@ -12,7 +12,7 @@ func Nearest(name string, candidates []string) string {
 	plain := []rune(plainName(name))
 	for _, candidate := range candidates {
 		other := []rune(plainName(candidate))
-		allowed := max(1, (max(len(plain), len(other))+1)/3)
+		allowed := max(1, max(len(plain), len(other))/3)
 		if len(plain) < 2 || len(other) < 2 {
 			allowed = 0
 		}

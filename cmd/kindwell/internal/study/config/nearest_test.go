@@ -22,6 +22,7 @@ func TestNearest(t *testing.T) {
 		{"ouetr", keys, "outer"},
 		{"set", keys, "sets"},
 		{"lamda", keys, ""},
+		{"file", []string{"title"}, ""},
 		{"", keys, ""},
 		{"x", []string{"y", "z"}, ""},
 		{"E", []string{"e"}, "e"},
