@@ -43,8 +43,8 @@ type Structure struct {
 }
 
 // StructureError says that the symmetries of a family could not be found with
-// reasonable work. Families of people are never like that; a relation matrix
-// of hundreds of members who are all alike without being exchangeable is.
+// reasonable work. It takes hundreds of members with hundreds of branches that
+// are alike, or a relation matrix that no family of people has.
 type StructureError struct {
 	Family, Size int
 }

@@ -40,6 +40,19 @@ func paley(p int) func(i, j int) bool {
 	return func(i, j int) bool { return square[(j-i)%p] }
 }
 
+// rings has a ring of six in the even members and two of three in the odd
+// ones. All have two neighbours, so that colours tell none of them apart.
+func rings(i, j int) bool {
+	switch a, b := i/2, j/2; {
+	case i%2 != j%2:
+		return false
+	case i%2 == 0:
+		return b-a == 1 || b-a == 5
+	default:
+		return a/3 == b/3
+	}
+}
+
 func rook(i, j int) bool { return i/4 == j/4 || i%4 == j%4 }
 
 func shrikhande(i, j int) bool {
@@ -69,6 +82,7 @@ func TestSymmetriesOfKnownGraphs(t *testing.T) {
 		{"Paley of order 37", 37, paley(37), 666},
 		{"rook on a board of 4 by 4", 16, rook, 1152},
 		{"Shrikhande", 16, shrikhande, 192},
+		{"a ring of six between two of three: 12 x 6^2 2!", 12, rings, 864},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			var made cohort
