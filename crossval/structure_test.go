@@ -40,16 +40,16 @@ func paley(p int) func(i, j int) bool {
 	return func(i, j int) bool { return square[(j-i)%p] }
 }
 
-// rings has a ring of six in the even members and two of three in the odd
+// rings has a ring of ten in the even members and two of five in the odd
 // ones. All have two neighbours, so that colours tell none of them apart.
 func rings(i, j int) bool {
 	switch a, b := i/2, j/2; {
 	case i%2 != j%2:
 		return false
 	case i%2 == 0:
-		return b-a == 1 || b-a == 5
+		return b-a == 1 || b-a == 9
 	default:
-		return a/3 == b/3
+		return a/5 == b/5 && (b-a == 1 || b-a == 4)
 	}
 }
 
@@ -82,7 +82,7 @@ func TestSymmetriesOfKnownGraphs(t *testing.T) {
 		{"Paley of order 37", 37, paley(37), 666},
 		{"rook on a board of 4 by 4", 16, rook, 1152},
 		{"Shrikhande", 16, shrikhande, 192},
-		{"a ring of six between two of three: 12 x 6^2 2!", 12, rings, 864},
+		{"a ring of ten between two of five: 20 x 10^2 2!", 20, rings, 4000},
 	} {
 		t.Run(c.name, func(t *testing.T) {
 			var made cohort
