@@ -132,3 +132,47 @@ func TestBMITests(t *testing.T) {
 	}
 	near(t, "E against AE", a.Ratio, 529.2984-8.0550, 1e-4)
 }
+
+func TestBMICriteria(t *testing.T) {
+	s := twinPairs(t, 533, 327, bmiMZ, bmiDZ)
+	for m, parameters := range map[Model]int{ModelE: 2, ModelAE: 3, ModelACE: 4, ModelADE: 4} {
+		f := mustFit(t, s, m)
+		if f.Parameters != parameters || f.People != 2*860 || f.Families != 860 {
+			t.Errorf("%s: %d parameters, %d people in %d families", m, f.Parameters, f.People, f.Families)
+		}
+		near(t, "AIC", f.AIC, -2*f.LogLik+2*float64(parameters), 1e-9)
+		// ln(860) = 6.756932389247553.
+		near(t, "BIC", f.BIC, -2*f.LogLik+6.756932389247553*float64(parameters), 1e-9)
+		if f.Evaluations < 2 || m != ModelE && f.Restarts < 3 {
+			t.Errorf("%s: %d evaluations, %d restarts", m, f.Evaluations, f.Restarts)
+		}
+		if s.Structures() != 2 {
+			t.Errorf("%d structures, want 2", s.Structures())
+		}
+	}
+	// With C at its bound ACE is AE with one parameter more.
+	ae, ace := mustFit(t, s, ModelAE), mustFit(t, s, ModelACE)
+	near(t, "AIC of a component at its bound", ace.AIC-ae.AIC, 2, 1e-9)
+}
+
+func TestModels(t *testing.T) {
+	for m := ModelE; m <= ModelADE; m++ {
+		got, err := ParseModel(m.String())
+		if err != nil || got != m {
+			t.Errorf("ParseModel(%q) = %v, %v", m.String(), got, err)
+		}
+		name := ""
+		for _, c := range m.Components() {
+			name += c.String()
+		}
+		if name != m.String() {
+			t.Errorf("model %s has components %s", m, name)
+		}
+	}
+	if _, err := ParseModel("ACDE"); err == nil || err.Error() != `no model "ACDE"; the models are E, AE, CE, DE, ACE and ADE` {
+		t.Errorf("error %v", err)
+	}
+	if ModelAE.Has(C) || !ModelAE.Has(A) {
+		t.Error("AE has A and not C")
+	}
+}

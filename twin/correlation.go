@@ -22,7 +22,8 @@ type CorrelationOptions struct {
 // Correlation is how alike the people of one relation are.
 type Correlation struct {
 	Relation Relation
-	// Pairs counts the pairs in the sample, Families those with such a pair.
+	// Pairs counts the pairs behind the correlation, Families those with such a
+	// pair.
 	Pairs, Families int
 	// Value is the correlation, Low and High its interval.
 	Value, Low, High float64
@@ -47,8 +48,9 @@ func siblings(r Relation) bool { return r >= MZ && r <= HalfSibling }
 //
 // where B_k is 1 for the pairs of relation k. Whole sibships enter, so that
 // pairs of one sibship are not taken for independent, and relations of siblings
-// other than the asked one have correlations of their own. The interval is the
-// profile likelihood's.
+// other than the asked one have correlations of their own; one that is found in
+// too few families for that is taken out with the second of its two people. The
+// interval is the profile likelihood's.
 //
 // A parent and a child, or a mother and a father, differ in kind: their
 // correlation is interclass. Over all pairs, parents (mothers) are regressed on
@@ -57,50 +59,25 @@ func siblings(r Relation) bool { return r >= MZ && r <= HalfSibling }
 // families drawn with replacement. The sample's Kin must have the methods of
 // Lineage for these two relations.
 //
-// The errors are *TooFewError below three families with such a pair,
-// ErrNoVariance, and *NotConvergedError. Relations other than these panic.
+// The errors are *TooFewError where fewer families have such a pair than there
+// are fixed effects and two more, ErrNoVariance, and *NotConvergedError.
+// Relations other than these panic.
 func (s *Sample) Correlation(r Relation, opt CorrelationOptions) (*Correlation, error) {
 	if !(opt.Confidence > 0 && opt.Confidence < 1) {
 		panic("twin: confidence must lie between 0 and 1")
 	}
-	pairs := s.pairsOf(r)
-	c := &Correlation{Relation: r, Pairs: len(pairs), Confidence: opt.Confidence}
-	last := -1
-	for _, p := range pairs {
-		if f := int(p.family); f != last {
-			c.Families++
-			last = f
-		}
-	}
-	if c.Families < 3 {
-		return nil, &TooFewError{What: fmt.Sprintf("families with a pair of relation %s", r), Have: c.Families, Need: 3}
-	}
+	c := &Correlation{Relation: r, Confidence: opt.Confidence}
 	switch {
 	case siblings(r):
-		return c, s.intraclass(c, pairs)
+		return c, s.intraclass(c)
 	case r == ParentChild || r == Spouse:
-		return c, s.interclass(c, pairs, opt)
+		return c, s.interclass(c, opt)
 	}
 	panic("twin: no correlation of relation " + r.String())
 }
 
-// pairIn is a pair of positions in the sample, first before second, and the
-// number of its family.
-type pairIn struct{ first, second, family int32 }
-
-// pairsOf lists the pairs of a relation, family by family.
-func (s *Sample) pairsOf(r Relation) []pairIn {
-	var pairs []pairIn
-	for f, members := range groupBy(len(s.people), s.familyOf) {
-		for b, second := range members {
-			for _, first := range members[:b] {
-				if s.relation(first, second) == r {
-					pairs = append(pairs, pairIn{first, second, int32(f)})
-				}
-			}
-		}
-	}
-	return pairs
+func tooFewPairs(c *Correlation, need int) error {
+	return &TooFewError{What: fmt.Sprintf("families with a pair of relation %s", c.Relation), Have: c.Families, Need: need}
 }
 
 func (s *Sample) familyOf(i int) int { return s.kin.Family(s.people[i]) }
@@ -108,16 +85,11 @@ func (s *Sample) familyOf(i int) int { return s.kin.Family(s.people[i]) }
 func (s *Sample) relation(i, j int32) Relation { return s.kin.Relation(s.people[i], s.people[j]) }
 
 // intraclass fills in the correlation of a relation among siblings.
-func (s *Sample) intraclass(c *Correlation, pairs []pairIn) error {
-	in := make([]bool, len(s.people))
-	for _, p := range pairs {
-		in[p.first], in[p.second] = true, true
-	}
-	var who []int32
-	for i, is := range in {
-		if is {
-			who = append(who, int32(i))
-		}
+func (s *Sample) intraclass(c *Correlation) error {
+	who := s.withRelative(c)
+	if need := s.columns.width + 1; c.Families < need {
+		// With fewer, the fixed effects can fit every difference of a pair.
+		return tooFewPairs(c, need)
 	}
 	columns, err := s.subset(who)
 	if err != nil {
@@ -166,6 +138,74 @@ func correlationStarts(m int) [][]float64 {
 	}
 	all[m] = 1 - 0.2*float64(m)
 	return [][]float64{none, first, all}
+}
+
+// withRelative lists the people of a sample who have a relative of the
+// correlation's relation in it, and counts their pairs. Another relation among
+// these people has a correlation of its own to be estimated beside, for which
+// it must be found in a number of families; where it is not, the second of each
+// such two people is left out.
+func (s *Sample) withRelative(c *Correlation) []int32 {
+	out := make([]bool, len(s.people))
+	for {
+		var families, pairs [relationCount]int
+		var second [relationCount][]int32
+		in := make([]bool, len(s.people))
+		for _, members := range groupBy(len(s.people), s.familyOf) {
+			s.eachPair(members, out, func(i, j int32, r Relation) {
+				if r == c.Relation {
+					in[i], in[j] = true, true
+				}
+			})
+			var here [relationCount]bool
+			s.eachPair(members, out, func(i, j int32, r Relation) {
+				if in[i] && in[j] && siblings(r) {
+					pairs[r]++
+					second[r] = append(second[r], j)
+					if !here[r] {
+						here[r] = true
+						families[r]++
+					}
+				}
+			})
+		}
+		rare := -1
+		for r := range families {
+			if Relation(r) != c.Relation && families[r] > 0 && families[r] < s.columns.width+rareFamilies {
+				if rare < 0 || families[r] < families[rare] {
+					rare = r
+				}
+			}
+		}
+		if rare < 0 {
+			c.Pairs, c.Families = pairs[c.Relation], families[c.Relation]
+			var who []int32
+			for i, is := range in {
+				if is {
+					who = append(who, int32(i))
+				}
+			}
+			return who
+		}
+		for _, j := range second[rare] {
+			out[j] = true
+		}
+	}
+}
+
+// rareFamilies and the number of fixed effects are what a relation beside the
+// asked one needs in families.
+const rareFamilies = 5
+
+// eachPair visits the pairs of members of a family that are not left out.
+func (s *Sample) eachPair(members []int32, out []bool, visit func(i, j int32, r Relation)) {
+	for b, j := range members {
+		for _, i := range members[:b] {
+			if !out[i] && !out[j] {
+				visit(i, j, s.relation(i, j))
+			}
+		}
+	}
 }
 
 // subset prepares the variable and covariates of some people of the sample

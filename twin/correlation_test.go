@@ -139,11 +139,37 @@ func TestGaltonCorrelations(t *testing.T) {
 	}
 }
 
+// twinsWithSiblings is a sample of families with two twins, a sibling and a
+// half-sibling; MZ, same-sex DZ and opposite-sex DZ twins take turns.
+func twinsWithSiblings(seed uint64, families int) familySample {
+	draw := stream.New(seed, "twins with siblings")
+	f := familySample{kin: &tableKin{}, names: []string{"age"}}
+	const room = 1 << 20
+	var ages []float64
+	for n := range families {
+		mother, father := room+3*n, room+3*n+1
+		f.kin.add(n, mother, father, n, n%3 == 0, false)
+		f.kin.add(n, mother, father, n, n%3 == 0, n%3 == 2)
+		f.kin.add(n, mother, father, -1, false, false)
+		f.kin.add(n, mother, room+3*n+2, -1, false, true)
+		home, genes := draw.Norm(), draw.Norm()
+		for c := range 4 {
+			if n%3 > 0 || c > 1 {
+				genes = (genes + draw.Norm()) / math.Sqrt2
+			}
+			age := 20 + 10*draw.Float64()
+			ages = append(ages, age)
+			f.y = append(f.y, home+genes+draw.Norm()+0.05*age)
+		}
+	}
+	f.covariates = mat.NewDense(len(f.y), 1, ages)
+	return f
+}
+
 // Sibships that mix relations: correlation and limits against a search over a
 // dense likelihood of the same people, all correlations free.
 func TestCorrelationByDenseRoute(t *testing.T) {
-	f := mixedFamilies(11, 100, 3)
-	f.covariates, f.names = f.covariates.Slice(0, len(f.y), 0, 1).(*mat.Dense), f.names[:1]
+	f := twinsWithSiblings(11, 36)
 	s := f.sample(t)
 	for _, r := range []Relation{FullSibling, HalfSibling} {
 		c := mustCorrelate(t, s, r, confident)
@@ -156,6 +182,9 @@ func TestCorrelationByDenseRoute(t *testing.T) {
 					break
 				}
 			}
+		}
+		if r == FullSibling && (c.Pairs != 2*36 || c.Families != 36) || r == HalfSibling && (c.Pairs != 3*36 || c.Families != 36) {
+			t.Errorf("%s: %d pairs in %d families", r, c.Pairs, c.Families)
 		}
 		relations := []Relation{r}
 		for _, i := range who {
@@ -277,6 +306,40 @@ func lowest(f func([]float64) float64, x []float64) float64 {
 		}
 	}
 	return value
+}
+
+// A relation beside the asked one that few families have cannot have a
+// correlation of its own: the likelihood would run away with it. Leaving one of
+// the two people out is the same as if he had never been there.
+func TestRareRelationsAreLeftOut(t *testing.T) {
+	f := twinsWithSiblings(13, 36)
+	var rows []int
+	for i := range f.y {
+		// MZ twins stay whole in four families of twelve.
+		if f.kin.family[i]%3 == 0 && i%4 == 1 && f.kin.family[i] >= 12 {
+			continue
+		}
+		rows = append(rows, i)
+	}
+	part := func(rows []int) *Sample {
+		y := make([]float64, len(rows))
+		for at, r := range rows {
+			y[at] = f.y[r]
+		}
+		s, err := NewSample(f.kin, rows, y, nil, nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return s
+	}
+	all := mustCorrelate(t, part(rows), FullSibling, confident)
+	rows = slices.DeleteFunc(rows, func(i int) bool { return f.kin.family[i]%3 == 0 && i%4 == 1 })
+	apart := mustCorrelate(t, part(rows), FullSibling, confident)
+	if all.Pairs != apart.Pairs || all.Families != apart.Families {
+		t.Errorf("%+v, want %+v", all, apart)
+	}
+	near(t, "correlation", all.Value, apart.Value, 1e-9)
+	near(t, "low", all.Low, apart.Low, 1e-9)
 }
 
 // Taking all pairs of a sibship for independent makes intervals too narrow:

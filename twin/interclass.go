@@ -19,7 +19,7 @@ type Lineage interface {
 
 // interclass fills in the correlation of parents with children, or of mothers
 // with fathers.
-func (s *Sample) interclass(c *Correlation, pairs []pairIn, opt CorrelationOptions) error {
+func (s *Sample) interclass(c *Correlation, opt CorrelationOptions) error {
 	lineage, ok := s.kin.(Lineage)
 	if !ok {
 		panic("twin: an interclass correlation needs a Kin with Len, Mother and Father")
@@ -28,17 +28,27 @@ func (s *Sample) interclass(c *Correlation, pairs []pairIn, opt CorrelationOptio
 	// Sums of cross-products of both sides, family by family.
 	w := s.columns.width
 	var families []*sides
-	last := int32(-1)
-	for _, p := range pairs {
-		if p.family != last {
-			families = append(families, newSides(w))
-			last = p.family
-		}
-		a, b := int(p.first), int(p.second)
-		if !first(a, b) {
-			a, b = b, a
-		}
-		families[len(families)-1].add(s.columns.rows[a*w:(a+1)*w], s.columns.rows[b*w:(b+1)*w])
+	none := make([]bool, len(s.people))
+	for _, members := range groupBy(len(s.people), s.familyOf) {
+		var f *sides
+		s.eachPair(members, none, func(i, j int32, r Relation) {
+			if r != c.Relation {
+				return
+			}
+			if f == nil {
+				f = newSides(w)
+				families = append(families, f)
+			}
+			a, b := int(i), int(j)
+			if !first(a, b) {
+				a, b = b, a
+			}
+			f.add(s.columns.rows[a*w:(a+1)*w], s.columns.rows[b*w:(b+1)*w])
+			c.Pairs++
+		})
+	}
+	if c.Families = len(families); c.Families < w+1 {
+		return tooFewPairs(c, w+1)
 	}
 	total := newSides(w)
 	for _, f := range families {

@@ -17,7 +17,7 @@ type Mixture [3]float64
 // degrees of freedom is the constant 0, so that Tail(0) is 1.
 func (m Mixture) Tail(x float64) float64 {
 	if x <= 0 {
-		return m[0] + m[1] + m[2]
+		return 1
 	}
 	return m[1]*math.Erfc(math.Sqrt(x/2)) + m[2]*math.Exp(-x/2)
 }

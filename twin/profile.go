@@ -51,8 +51,9 @@ func (q Quantity) String() string {
 type Interval struct {
 	Estimate  float64
 	Low, High float64
-	// LowAtBound and HighAtBound say that the interval ends at 0 or 1 because
-	// shares do, not because the likelihood has fallen.
+	// LowAtBound and HighAtBound say that the interval ends because the shares
+	// do, not because the likelihood has fallen: at 0 or 1, or, for signed
+	// quantities, where V is no longer positive definite in every family.
 	LowAtBound, HighAtBound bool
 	Confidence              float64 // as asked, 0.95 for instance
 }
@@ -165,7 +166,7 @@ func (p *profile) search(t float64) *search {
 func (p *profile) limit(estimate, sign, root float64) (at float64, bound bool, err error) {
 	edge := math.Inf(1)
 	if p.bounded {
-		edge = (1 - estimate) * (1 + sign) / 2
+		edge = 1 - estimate
 		if sign < 0 {
 			edge = estimate
 		}
@@ -178,100 +179,180 @@ func (p *profile) limit(estimate, sign, root float64) (at float64, bound bool, e
 		rise, err := p.rise(estimate + sign*distance)
 		return math.Sqrt(max(rise, 0)) - root, err
 	}
-	inside, outside := 0.0, math.Inf(1)
-	low, high := -root, 0.0
-	for d := min(0.1, edge); ; {
+	inside, low := 0.0, -root
+	outside, high := math.Inf(1), 0.0
+	d := min(p.reach(sign, root), edge)
+	for high <= 0 {
 		e, err := excess(d)
-		if err != nil {
-			return 0, false, err
-		}
 		switch {
+		case err != nil:
+			return 0, false, err
 		case math.IsInf(e, 1):
-			// Beyond the region where V is positive definite.
+			// No minimum there, or none that is joined to the fit.
 			outside = d
-			if outside-inside < 1e-12 {
-				return estimate + sign*inside, false, nil
-			}
-			d = (inside + outside) / 2
-			continue
-		case e <= 0:
+		case e > 0:
+			outside, high = d, e
+		case d == edge:
+			return estimate + sign*edge, true, nil
+		default:
 			inside, low = d, e
-			if d == edge {
-				return estimate + sign*edge, true, nil
-			}
-			if math.IsInf(outside, 1) {
-				d = min(2*d, edge)
-			} else {
-				d = (inside + outside) / 2
-			}
+		}
+		if high > 0 {
+			break
+		}
+		if math.IsInf(outside, 1) {
+			d = min(edge, d*max(1.2, min(3, 1.1*root/(e+root))))
 			continue
 		}
-		outside, high = d, e
-		break
+		if d = (inside + outside) / 2; outside-inside < 1e-10 {
+			if p.bounded {
+				return 0, false, errProfile
+			}
+			// The likelihood has not fallen enough where V ends to be positive
+			// definite, or to have a maximum that belongs to the fit's.
+			return estimate + sign*inside, true, nil
+		}
 	}
-	d, err := brent(excess, inside, low, outside, high, 1e-11)
-	return estimate + sign*d, false, err
+	d, err = brent(excess, inside, low, outside, high, 1e-11)
+	if err != nil {
+		return 0, false, err
+	}
+	return estimate + sign*d, false, nil
+}
+
+// reach is how far the limit would lie if the deviance were a parabola.
+func (p *profile) reach(sign, root float64) float64 {
+	w := p.known[0].shares
+	moved := p.tangent(w, p.total[0]+sign)
+	// The likelihood is still at w.
+	slope, curvature := 0.0, 0.0
+	point := p.search(p.total[0]).point
+	p.lik.at(w[:len(w)-1], point)
+	m := len(w) - 1
+	for j := range m {
+		dj := moved[j] - w[j]
+		slope += point.gradient[j] * dj
+		for k := range m {
+			curvature += dj * point.hessian[j*m+k] * (moved[k] - w[k])
+		}
+	}
+	slope = max(slope, 0)
+	if !(curvature > 0) {
+		return 0.1
+	}
+	distance := (math.Sqrt(slope*slope+2*curvature*root*root) - slope) / curvature
+	return max(1e-6, min(distance, 0.3))
 }
 
 // rise is the deviance above the fit's with the inside shares summing to t,
-// infinite where V is positive definite for no such shares.
+// infinite where no minimum is found that is joined to the fit's.
 func (p *profile) rise(t float64) (float64, error) {
-	// Start from the nearest point known.
 	near := 0
 	for i, v := range p.total {
 		if math.Abs(v-t) < math.Abs(p.total[near]-t) {
 			near = i
 		}
 	}
-	s := p.search(t)
-	f, ok := p.approach(s, near, t)
+	f, ok := p.follow(near, t)
 	if p.bounded && len(p.inside)+len(p.outside) > 2 {
-		if other, fine := s.from(p.even(t)); fine && (!ok || better(other, f, p.lik.people)) {
+		// A bound may hide a lower minimum from the path.
+		other, fine := p.search(t).from(p.even(t))
+		if fine && other.converged && other.pivot > leastDistance && (!ok || better(other, f, p.lik.people)) {
 			f, ok = other, true
 		}
 	}
 	if !ok {
 		return math.Inf(1), nil
 	}
-	if !f.converged || f.deviance < p.least-1e-7 {
-		return 0, errProfile
+	if f.deviance < p.least-p.rounding() {
+		return 0, errProfile // the fit was not the lowest minimum
 	}
 	p.known, p.total = append(p.known, f), append(p.total, t)
 	return f.deviance - p.least, nil
 }
 
-// approach searches at t from a known point: its shares scaled to the new
-// totals where bounds keep them safe, else moved in step with the change.
-func (p *profile) approach(s *search, near int, t float64) (found, bool) {
-	old, from := p.known[near].shares, p.total[near]
-	if p.bounded {
-		w := append([]float64(nil), old...)
-		scale := func(members []int, before, after float64) {
-			for _, j := range members {
-				if before > 0 {
-					w[j] *= after / before
-				} else {
-					w[j] = after / float64(len(members))
-				}
-			}
-		}
-		scale(p.inside, from, t)
-		scale(p.outside, 1-from, 1-t)
-		return s.from(w)
-	}
-	// Follow the path of minima in as few steps as keep V positive definite.
-	for pieces := 1; pieces <= 64; pieces *= 4 {
-		f, ok := found{shares: old}, true
+// rounding is what two deviances may differ by without meaning it.
+func (p *profile) rounding() float64 { return 1e-7 + 1e-10*float64(p.lik.people) }
+
+// follow searches at t from a known point, along the path of minima in as few
+// steps as stay on it: V must be positive definite at every start, and the
+// minimum no lower than the fit's.
+func (p *profile) follow(near int, t float64) (found, bool) {
+	from := p.total[near]
+	for pieces := 1; pieces <= 16; pieces *= 4 {
+		f, ok := p.known[near], true
 		for piece := 1; piece <= pieces && ok; piece++ {
 			reach := from + (t-from)*float64(piece)/float64(pieces)
-			here := p.search(reach)
-			f, ok = here.from(p.tangent(f.shares, reach))
+			if piece == pieces {
+				reach = t
+			}
+			start := p.scaled
+			if !p.bounded {
+				start = p.tangent
+			}
+			f, ok = p.search(reach).from(start(f.shares, reach))
+			ok = ok && f.converged && f.pivot > leastDistance && f.deviance >= p.least-p.rounding()
 		}
 		if ok {
 			return f, true
 		}
 	}
 	return found{}, false
+}
+
+// scaled moves shares so that the inside ones sum to t, all of them and all of
+// the others in proportion. Where the bounds hold, V stays positive definite.
+func (p *profile) scaled(w []float64, t float64) []float64 {
+	before := p.sum(w)
+	moved := append([]float64(nil), w...)
+	scale := func(members []int, before, after float64) {
+		for _, j := range members {
+			if before > 1e-12 {
+				moved[j] *= after / before
+			} else {
+				moved[j] = after / float64(len(members))
+			}
+		}
+	}
+	scale(p.inside, before, t)
+	scale(p.outside, 1-before, 1-t)
+	return moved
+}
+
+func (p *profile) sum(w []float64) float64 {
+	var t float64
+	for _, j := range p.inside {
+		t += w[j]
+	}
+	return t
+}
+
+// tangent moves shares so that the inside ones sum to t, along the tangent of
+// the path of minima.
+func (p *profile) tangent(w []float64, t float64) []float64 {
+	before := p.sum(w)
+	s := p.search(before)
+	moved := append([]float64(nil), w...)
+	if !p.lik.at(w[:len(w)-1], s.point) {
+		return moved
+	}
+	s.chooseMoves(w)
+	shift := move{share: s.reference(s.groups[0], w), reference: s.reference(s.groups[1], w)}
+	var free []int
+	for i := range s.moves {
+		if !s.moves[i].held {
+			free = append(free, i)
+		}
+		s.moves[i].slope = (t - before) * s.curvature(s.moves[i], shift)
+	}
+	s.solveFree(free)
+	moved[shift.share] += t - before
+	moved[shift.reference] -= t - before
+	for _, v := range s.moves {
+		moved[v.share] += v.length
+		moved[v.reference] -= v.length
+	}
+	return moved
 }
 
 // even returns shares with the inside summing to t, alike inside and alike
@@ -285,31 +366,4 @@ func (p *profile) even(t float64) []float64 {
 		w[j] = (1 - t) / float64(len(p.outside))
 	}
 	return w
-}
-
-// tangent moves shares so that the inside ones sum to t, along the tangent of
-// the path of minima.
-func (p *profile) tangent(w []float64, t float64) []float64 {
-	before := 0.0
-	for _, j := range p.inside {
-		before += w[j]
-	}
-	s := p.search(before)
-	moved := append([]float64(nil), w...)
-	if !p.lik.at(w[:len(w)-1], s.point) {
-		return moved
-	}
-	s.chooseMoves(w)
-	shift := move{share: s.reference(s.groups[0], w), reference: s.reference(s.groups[1], w)}
-	for i := range s.moves {
-		s.moves[i].slope = (t - before) * s.curvature(s.moves[i], shift)
-	}
-	s.solveFree(upTo(len(s.moves)))
-	moved[shift.share] += t - before
-	moved[shift.reference] -= t - before
-	for _, v := range s.moves {
-		moved[v.share] += v.length
-		moved[v.reference] -= v.length
-	}
-	return moved
 }

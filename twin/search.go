@@ -68,6 +68,7 @@ func newSearch(lik *likelihood, groups []group, bounded bool) *search {
 // stay there while the deviance would rise (active set).
 func (s *search) from(start []float64) (found, bool) {
 	w := append([]float64(nil), start...)
+	s.balance(w)
 	next := make([]float64, len(w))
 	m := len(w) - 1
 	if !s.lik.at(w[:m], s.point) {
@@ -95,6 +96,7 @@ func (s *search) from(start []float64) (found, bool) {
 			if hit >= 0 {
 				next[hit] = 0
 			}
+			s.balance(next)
 			if s.lik.at(next[:m], s.point) && s.point.deviance <= before-1e-4*t*fall+slack {
 				break
 			}
@@ -117,6 +119,20 @@ func (s *search) from(start []float64) (found, bool) {
 		f.slope = s.slope(s.reference(s.groups[0], w), s.reference(s.groups[1], w))
 	}
 	return f, true
+}
+
+// balance makes the shares of each group add to its total exactly.
+func (s *search) balance(w []float64) {
+	for _, g := range s.groups {
+		r := s.reference(g, w)
+		rest := g.total
+		for _, j := range g.members {
+			if j != r {
+				rest -= w[j]
+			}
+		}
+		w[r] = rest
+	}
 }
 
 // reference returns the share of a group that gives way to the others: the
@@ -163,7 +179,7 @@ func (s *search) curvature(a, b move) float64 {
 func (s *search) chooseMoves(w []float64) {
 	s.moves = s.moves[:0]
 	for _, g := range s.groups {
-		if s.bounded && g.total == 0 {
+		if s.bounded && g.total < 1e-12 {
 			continue
 		}
 		r := s.reference(g, w)
