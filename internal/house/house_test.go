@@ -80,7 +80,7 @@ func TestImportsRunDownward(t *testing.T) {
 		{command + "cohort", append([]string{"internal"}, statistics...)},
 		{command + "demo", []string{"testdata"}},
 		{command + "report", []string{command + "tidy"}},
-		{command + "study/config", nil},
+		{command + "study/config", []string{"internal"}},
 		{command + "study", append([]string{"internal", command}, statistics...)},
 		{"cmd/kindwell", []string{command}},
 	}

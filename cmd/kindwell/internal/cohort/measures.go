@@ -5,6 +5,8 @@ import (
 	"slices"
 
 	"gonum.org/v1/gonum/mat"
+
+	"kindwell/internal/names"
 )
 
 // Measures are the tables of measures as they stand in the files: nothing is
@@ -144,7 +146,7 @@ func (l *loader) loadMeasureTable(in MeasuresInput, file string, faults *collect
 }
 
 func matches(patterns []string, name string) bool {
-	return slices.ContainsFunc(patterns, func(p string) bool { return glob(p, name) })
+	return slices.ContainsFunc(patterns, func(p string) bool { return names.Match(p, name) })
 }
 
 // joinRows joins tables by person and session. Sessions of a person come in the

@@ -7,6 +7,7 @@ import (
 	"sort"
 	"strings"
 
+	"kindwell/internal/names"
 	"kindwell/twin"
 )
 
@@ -152,7 +153,7 @@ func (l *loader) warnNearlyRoles(p *peopleTable, g *grid) {
 			if p.role[name] != "" || name == l.in.People.Session {
 				continue
 			}
-			if plain(name) == plain(role) || len(role) >= 6 && distance([]rune(plain(name)), []rune(plain(role)), 2) < 2 {
+			if plain(name) == plain(role) || len(role) >= 6 && names.Distance(plain(name), plain(role)) < 2 {
 				l.warn("people", role, fmt.Sprintf("%s has no column %s; if %s is meant, map it (people: {columns: {%s: %s}})", g.file, role, quote(name), role, name))
 				break
 			}

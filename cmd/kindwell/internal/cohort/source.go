@@ -13,6 +13,8 @@ import (
 	"path/filepath"
 	"strings"
 	"unicode/utf8"
+
+	"kindwell/internal/names"
 )
 
 const (
@@ -199,7 +201,7 @@ func whyNot(err error, path string) string {
 				tables = append(tables, e.Name())
 			}
 		}
-		if near := nearest(filepath.Base(path), tables); near != "" {
+		if near := names.Nearest(filepath.Base(path), tables); near != "" {
 			return "there is no such file; the nearest name in its folder is " + quote(near)
 		}
 		return "there is no such file"

@@ -39,6 +39,23 @@ func (c columns) without(name string) columns {
 	return kept
 }
 
+// among keeps the squares and products that are made of the given columns, and
+// uses these columns.
+func (c columns) among(use []string) columns {
+	kept := columns{use: use}
+	for _, s := range c.squares {
+		if slices.Contains(use, s) {
+			kept.squares = append(kept.squares, s)
+		}
+	}
+	for _, p := range c.products {
+		if slices.Contains(use, p[0]) && slices.Contains(use, p[1]) {
+			kept.products = append(kept.products, p)
+		}
+	}
+	return kept
+}
+
 // describe writes the columns as one cell of a table.
 func (c columns) describe() string {
 	words := slices.Clone(c.use)
@@ -78,13 +95,13 @@ func designOf(people *cohort.Cohort, c columns, rows []int) design {
 	for _, name := range c.squares {
 		for _, t := range termsOf(people, name, rows) {
 			about := centred(t.values)
-			add(t.name+"^2", product(about, about))
+			add(fmt.Sprintf("(%s - mean)^2", t.name), product(about, about))
 		}
 	}
 	for _, p := range c.products {
 		for _, a := range termsOf(people, p[0], rows) {
 			for _, b := range termsOf(people, p[1], rows) {
-				add(a.name+" x "+b.name, product(centred(a.values), centred(b.values)))
+				add(fmt.Sprintf("(%s - mean) x (%s - mean)", a.name, b.name), product(centred(a.values), centred(b.values)))
 			}
 		}
 	}

@@ -8,6 +8,7 @@ import (
 	"kindwell/cmd/kindwell/internal/cohort"
 	"kindwell/cmd/kindwell/internal/study/config"
 	"kindwell/features"
+	"kindwell/internal/names"
 )
 
 // faults gathers what is wrong with a study once its tables are read: names
@@ -25,7 +26,7 @@ func (f *faults) study(s *config.Study, path, message, advice string) {
 // name adds a fault about a name that matches none of the candidates.
 func (f *faults) name(s *config.Study, path, message, name string, candidates []string) {
 	advice := "there are none"
-	if near := config.Nearest(name, candidates); near != "" {
+	if near := names.Nearest(name, candidates); near != "" {
 		advice = fmt.Sprintf("did you mean %q?", near)
 	} else if len(candidates) > 0 {
 		advice = "there are " + strings.Join(shorten(candidates, 12), ", ")

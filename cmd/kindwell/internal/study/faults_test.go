@@ -36,6 +36,8 @@ func TestNamesThatMeanNothing(t *testing.T) {
 			[]string{`"sex" holds words and has no square`}},
 		{"one part of a whole", `match: ["occupancy_*"], as: clr`, `match: ["occupancy_1"], as: clr`,
 			[]string{`composition "occupancy": a composition needs two parts or more, not 1`, "match all parts of one whole"}},
+		{"inner folds alone", "inner: {folds: 3}", "inner: {file: inner.csv}",
+			[]string{"study.yaml:23:17: inner folds are given without outer folds", "give outer folds, too"}},
 		{"log of a share", "match: [dwell_s], as: log", "match: [dwell_s], as: logit",
 			nil}, // dwell times below 1 s have a logit: valid
 	} {

@@ -92,11 +92,12 @@ func (p *Plan) complete(analysis, about string, shared [][]string, names []strin
 }
 
 // chooseVariables lists the variables whose variance is divided, with their
-// covariates. A variable that holds words has no variance and is left out
+// covariates, and those squares and products of the confounds that are made of
+// covariates alone. A variable that holds words has no variance and is left out
 // with a warning.
 func (p *Plan) chooseVariables() {
 	h := p.Study.Heritability
-	covariates := columns{use: h.Covariates}
+	covariates := confoundColumns(p.Study.Confounds).among(h.Covariates)
 	seen := map[string]bool{}
 	add := func(v variable) {
 		if seen[v.name] {

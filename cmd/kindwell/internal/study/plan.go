@@ -214,6 +214,9 @@ func (p *Plan) checkColumns(f *faults) {
 	for i, name := range s.People.StructureBy {
 		known(name, fmt.Sprintf("people.structure_by[%d]", i))
 	}
+	if s.Predict != nil && s.Predict.Inner.File != "" && s.Predict.Outer.File == "" {
+		f.study(s, "predict.inner.file", "inner folds are given without outer folds, inside which they would lie", "give outer folds, too (outer: {file: NAME}), or a number of inner folds (inner: {folds: 5})")
+	}
 	if s.Heritability != nil && s.Given("heritability.covariates") {
 		for i, name := range s.Heritability.Covariates {
 			known(name, fmt.Sprintf("heritability.covariates[%d]", i))

@@ -4,6 +4,7 @@ import (
 	"fmt"
 
 	"kindwell/cmd/kindwell/internal/study/config"
+	"kindwell/internal/names"
 )
 
 func ExampleParse() {
@@ -44,7 +45,7 @@ traits: {file: mood.csv, use: [welbeing]}
 	for i, name := range study.Traits.Use {
 		faults.Add(study.At(fmt.Sprintf("traits.use[%d]", i)),
 			"`"+name+"` is no column of mood.csv",
-			"did you mean `"+config.Nearest(name, columns)+"`?")
+			"did you mean `"+names.Nearest(name, columns)+"`?")
 	}
 	fmt.Println(faults.Err())
 	// Output:

@@ -3,6 +3,8 @@ package config
 import (
 	"reflect"
 	"strings"
+
+	"kindwell/internal/names"
 )
 
 // expectedOf says what a value of a type must be under the rules of a key, for
@@ -101,7 +103,7 @@ func quoted(names []string) []string {
 
 // suggest words the nearest of some names, or lists them when none is near.
 func suggest(name string, candidates []string, list string) string {
-	if near := Nearest(name, candidates); near != "" {
+	if near := names.Nearest(name, candidates); near != "" {
 		return "did you mean `" + near + "`?"
 	}
 	if len(candidates) == 0 {

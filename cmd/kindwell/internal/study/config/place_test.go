@@ -5,6 +5,8 @@ import (
 	"strings"
 	"testing"
 	"unicode/utf8"
+
+	"kindwell/internal/names"
 )
 
 func TestAt(t *testing.T) {
@@ -59,7 +61,7 @@ func TestFaultsOfTheCaller(t *testing.T) {
 	if faults.Err() != nil {
 		t.Error("no fault is an error")
 	}
-	faults.Add(study.At("confounds.use[1]"), "`sexx` is no column of people.csv", "did you mean `"+Nearest("sexx", []string{"age", "sex"})+"`?")
+	faults.Add(study.At("confounds.use[1]"), "`sexx` is no column of people.csv", "did you mean `"+names.Nearest("sexx", []string{"age", "sex"})+"`?")
 	faults.Add(study.At("traits.use[0]"), "`wellbeing` is no column of mood.csv or people.csv", "")
 	err := faults.Err()
 	const want = "study.yaml:5:32: `wellbeing` is no column of mood.csv or people.csv\n" +

@@ -5,6 +5,8 @@ import (
 	"path/filepath"
 	"slices"
 	"strings"
+
+	"kindwell/internal/names"
 )
 
 // checker holds rules that span several keys. A rule is left out where one
@@ -156,7 +158,7 @@ func (c *checker) checkConfounds() {
 
 // addOr suggests the nearest name of a list in the study, or to add to it.
 func (c *checker) addOr(name string, list []string, path string) string {
-	if near := Nearest(name, list); near != "" {
+	if near := names.Nearest(name, list); near != "" {
 		return "did you mean `" + near + "`?"
 	}
 	return "add it to `" + path + "`"

@@ -6,6 +6,8 @@ import (
 	"strconv"
 	"strings"
 	"unicode"
+
+	"kindwell/internal/names"
 )
 
 var (
@@ -83,12 +85,12 @@ func (d *decoder) word(n *node, into reflect.Value, choices []Choice, path strin
 		into.SetString(n.text)
 		return
 	}
-	names := servedNames(choices)
+	served := servedNames(choices)
 	advice := ""
-	if near := Nearest(n.text, names); near != "" {
+	if near := names.Nearest(n.text, served); near != "" {
 		advice = "did you mean `" + near + "`?"
 	}
-	d.refuse(n, path, oneOf(names), advice)
+	d.refuse(n, path, oneOf(served), advice)
 }
 
 // number fills a whole number or a number and checks its range.

@@ -1,10 +1,9 @@
-package config
+package names
 
 import "strings"
 
-// Match says whether a pattern of a set or a transform matches the name of a
-// measure: * stands for any number of any characters, everything else for
-// itself.
+// Match says whether a pattern matches a name: * stands for any number of any
+// characters, everything else for itself, capitals included.
 func Match(pattern, name string) bool {
 	parts := strings.Split(pattern, "*")
 	if len(parts) == 1 {

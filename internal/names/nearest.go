@@ -1,4 +1,4 @@
-package config
+package names
 
 import "strings"
 
@@ -31,8 +31,11 @@ func plainName(name string) string {
 	return strings.NewReplacer(" ", "_", "-", "_").Replace(strings.ToLower(name))
 }
 
-// distance is the number of single letters to insert, delete, change or swap
-// with a neighbour that turn a into b (optimal string alignment).
+// Distance is the number of single letters to insert, delete, change or swap
+// with a neighbour that turn a into b (optimal string alignment, Damerau 1964).
+func Distance(a, b string) int { return distance([]rune(a), []rune(b)) }
+
+// distance is Distance of letters.
 func distance(a, b []rune) int {
 	before, last, next := make([]int, len(b)+1), make([]int, len(b)+1), make([]int, len(b)+1)
 	for j := range last {
