@@ -142,6 +142,22 @@ func TestDgemmInBlocksIsTheWhole(t *testing.T) {
 	}
 }
 
+// Rows of B that lie 4096 bytes apart are copied where others are read in place.
+func TestDgemmWithCrowdedRows(t *testing.T) {
+	r := rand.New(rand.NewPCG(11, 12))
+	for _, n := range []int{512, 509} {
+		p := randomCall(60, n, 270, r)
+		p.tB, p.ldb = blas.NoTrans, 512
+		p.b = randomNumbers(270*512, r)
+		want := p.asPromised()
+		for _, v := range variants(t) {
+			if at := firstDifference(p.by(v), want); at >= 0 {
+				t.Errorf("%s, n=%d: element (%d, %d) differs", v.name, n, at/p.ldc, at%p.ldc)
+			}
+		}
+	}
+}
+
 func TestDgemmNotANumber(t *testing.T) {
 	nan, inf := math.NaN(), math.Inf(1)
 	tests := []struct {

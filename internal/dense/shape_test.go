@@ -67,6 +67,7 @@ func TestRefusals(t *testing.T) {
 		{"blas: bad leading dimension of A", func(im blas.Float64) { im.Dgemm(blas.Trans, blas.Trans, 5, 1, 1, 1, x, 4, x, 1, 1, x, 1) }},
 		{"blas: bad leading dimension of B", func(im blas.Float64) { im.Dgemm(blas.Trans, blas.Trans, 1, 1, 5, 1, x, 1, x, 4, 1, x, 1) }},
 		{"blas: bad leading dimension of C", func(im blas.Float64) { im.Dgemm(blas.Trans, blas.Trans, 1, 5, 1, 1, x, 1, x, 1, 1, x, 4) }},
+		{"blas: bad leading dimension of C", func(im blas.Float64) { im.Dgemm(blas.Trans, blas.Trans, 1, 0, 1, 1, x, 1, x, 1, 1, x, 0) }},
 		{"blas: insufficient length of a", func(im blas.Float64) {
 			im.Dgemm(blas.NoTrans, blas.NoTrans, 5, 1, 5, 1, x[:24], 5, x, 1, 1, x, 1)
 		}},
