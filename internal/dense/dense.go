@@ -13,13 +13,13 @@ import (
 // Default returns the implementation of BLAS that this machine runs fastest;
 // large products use up to GOMAXPROCS goroutines. It is safe for use by
 // several goroutines.
-func Default() blas.Float64 { return choose(0) }
+func Default() blas.Float64 { return shared }
 
 // Single returns Default for callers that are parallel already: no routine
 // with a kernel starts a goroutine, and the results have the same bits. Where
 // no kernel applies it is gonum's own, which starts goroutines for large
 // products all the same.
-func Single() blas.Float64 { return choose(1) }
+func Single() blas.Float64 { return alone }
 
 // Kernel names what computes products on this machine: avx512, avx2, neon, or
 // gonum where no kernel applies.
@@ -30,12 +30,15 @@ func Kernel() string {
 	return "gonum"
 }
 
+// The processor does not change while the program runs: chosen once.
+var shared, alone = choose(0), choose(1)
+
 func choose(threads int) blas.Float64 {
 	best := fastest()
 	if best == nil {
 		return gonum.Implementation{}
 	}
-	return implementation{kernel: best, threads: threads, workPerThread: workPerThread}
+	return implementation{kernel: best, threads: threads, workPerThread: workPerThread, smallWork: smallWork}
 }
 
 // implementation is gonum's BLAS with three routines of level 3 replaced.
@@ -44,6 +47,7 @@ type implementation struct {
 	kernel        *kernel
 	threads       int // at most so many goroutines; 0 is GOMAXPROCS
 	workPerThread int // multiply-adds that make a goroutine worth starting
+	smallWork     int // multiply-adds up to which numbers are computed one by one
 }
 
 var _ blas.Float64 = implementation{}

@@ -26,7 +26,7 @@ type variant struct {
 }
 
 // variants are the kernels of this machine on 1, 2, 3 and 8 threads, even for
-// products that would not be worth a thread.
+// products that would not be worth a thread, and number by number.
 func variants(t *testing.T) []variant {
 	t.Helper()
 	var all []variant
@@ -41,7 +41,7 @@ func variants(t *testing.T) []variant {
 	if all == nil {
 		t.Skip("no kernel applies: products are gonum's")
 	}
-	return all
+	return append(all, variant{"number by number", implementation{kernel: fastest(), workPerThread: 1, smallWork: math.MaxInt}})
 }
 
 func randomNumbers(n int, r *rand.Rand) []float64 {

@@ -42,7 +42,7 @@
 // A product of zero and NaN or infinity is NaN here, whichever factor is zero.
 // Gonum leaves out terms in which A is zero and gets a number. Zero weights do
 // not hide missing values: whoever calls with NaN in A or B gets NaN in the
-// rows or columns that meet it. As in gonum, beta = 0 overwrites C whatever it
+// rows or columns that meet it, and Dtrsm likewise. As in gonum, beta = 0 overwrites C whatever it
 // holds, alpha = 0 reads neither A nor B, and Dsyrk reads and writes one
 // triangle of C only.
 package dense

@@ -104,21 +104,25 @@ func TestUnpackUndoesPack(t *testing.T) {
 	}
 }
 
-// Every task is done once, on as many goroutines as there are threads: the
-// first tasks wait for each other, and nobody takes a further one meanwhile.
+// Every part is done once, on as many goroutines as there are threads: the
+// first parts wait for each other, and nobody takes a further one meanwhile.
 func TestShare(t *testing.T) {
 	for _, threads := range []int{1, 3} {
 		var begun atomic.Int64
 		var times [20]atomic.Int64
 		together := make(chan struct{})
-		share(len(times), threads, func(_ *scratch, i int) {
-			times[i].Add(1)
+		var parts []block
+		for i := range times {
+			parts = append(parts, block{row: i})
+		}
+		share(parts, threads, func(_ *scratch, b block) {
+			times[b.row].Add(1)
 			if begun.Add(1) == int64(threads) {
 				for range 1000 {
 					runtime.Gosched() // room for a goroutine too many
 				}
 				if n := begun.Load(); n != int64(threads) {
-					t.Errorf("%d tasks at a time on %d threads", n, threads)
+					t.Errorf("%d parts at a time on %d threads", n, threads)
 				}
 				close(together)
 			}
@@ -126,7 +130,7 @@ func TestShare(t *testing.T) {
 		})
 		for i := range times {
 			if n := times[i].Load(); n != 1 {
-				t.Errorf("%d threads: task %d was done %d times", threads, i, n)
+				t.Errorf("%d threads: part %d was done %d times", threads, i, n)
 			}
 		}
 	}

@@ -1,6 +1,10 @@
 package dense
 
-import "gonum.org/v1/gonum/blas"
+import (
+	"math"
+
+	"gonum.org/v1/gonum/blas"
+)
 
 // operand is a matrix as a factor of a product, transposed or not.
 type operand struct {
@@ -16,6 +20,14 @@ func (o operand) from(row, column int) operand {
 	}
 	o.data = o.data[row*o.stride+column:]
 	return o
+}
+
+// steps returns how far apart in memory neighbours in a column and in a row are.
+func (o operand) steps() (down, along int) {
+	if o.transposed {
+		return 1, o.stride
+	}
+	return o.stride, 1
 }
 
 // flipped returns the operand transposed.
@@ -71,13 +83,49 @@ func (im implementation) Dgemm(tA, tB blas.Transpose, m, n, k int, alpha float64
 		alpha: alpha, a: operand{a, lda, tA != blas.NoTrans}, b: operand{b, ldb, tB != blas.NoTrans},
 		k: k, beta: beta, c: to,
 	}
-	threads := im.workers(m * n * k)
-	if threads == 1 {
-		withScratch(func(s *scratch) { p.compute(im.kernel, s) })
+	im.run(p, m*n*k, func(threads int) []block { return cut(block{0, 0, m, n}, threads, im.kernel) })
+}
+
+// run computes a product of so many multiply-adds: number by number, on this
+// goroutine, or on several that take part after part of what divide makes of C.
+func (im implementation) run(p product, work int, divide func(threads int) []block) {
+	if work <= im.smallWork {
+		p.computeSmall()
 		return
 	}
-	parts := cut(block{0, 0, m, n}, threads, im.kernel)
-	share(len(parts), threads, func(s *scratch, i int) { p.part(parts[i]).compute(im.kernel, s) })
+	threads := im.workers(work)
+	if threads == 1 {
+		s := borrow()
+		p.compute(im.kernel, s)
+		s.giveBack()
+		return
+	}
+	p.computeParts(divide(threads), threads, im.kernel)
+}
+
+// computeParts is apart from run lest small products pay for its closure.
+func (p product) computeParts(parts []block, threads int, kn *kernel) {
+	share(parts, threads, func(s *scratch, b block) { p.part(b).compute(kn, s) })
+}
+
+// computeSmall computes the product number by number, without packing.
+func (p product) computeSmall() {
+	p.c.scale(p.beta)
+	aDown, aAlong := p.a.steps()
+	bDown, bAlong := p.b.steps()
+	for i := range p.c.rows {
+		from, to := p.c.span(i)
+		row := p.c.data[i*p.c.stride:]
+		for j := from; j < to; j++ {
+			for l := 0; l < p.k; {
+				sum := 0.0
+				for end := min(l+blockDepth, p.k); l < end; l++ {
+					sum = math.FMA(p.alpha*p.a.data[i*aDown+l*aAlong], p.b.data[l*bDown+j*bAlong], sum)
+				}
+				row[j] += sum
+			}
+		}
+	}
 }
 
 // compute computes the product on the calling goroutine.

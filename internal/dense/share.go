@@ -6,9 +6,13 @@ import (
 	"sync/atomic"
 )
 
-// workPerThread is how many multiply-adds a thread must have to do before it is
-// worth waking: a sixth of a millisecond with the fastest kernel.
-const workPerThread = 8_000_000
+const (
+	// workPerThread is how many multiply-adds a thread must have to do before
+	// it is worth waking: a sixth of a millisecond with the fastest kernel.
+	workPerThread = 8_000_000
+	// smallWork is up to how many multiply-adds packing is not worth it.
+	smallWork = 128
+)
 
 // scratch is the memory that one goroutine packs into.
 type scratch struct {
@@ -21,12 +25,9 @@ type scratch struct {
 // next: whatever is read was written before in the same call.
 var spare = sync.Pool{New: func() any { return new(scratch) }}
 
-// withScratch lends memory to do.
-func withScratch(do func(s *scratch)) {
-	s := spare.Get().(*scratch)
-	do(s)
-	spare.Put(s)
-}
+func borrow() *scratch { return spare.Get().(*scratch) }
+
+func (s *scratch) giveBack() { spare.Put(s) }
 
 // grow returns n numbers of the buffer, made anew where it is too small.
 func grow(buffer *[]float64, n int) []float64 {
@@ -36,19 +37,19 @@ func grow(buffer *[]float64, n int) []float64 {
 	return (*buffer)[:n]
 }
 
-// share does tasks 0 to n-1, each once, on so many goroutines, the calling one
-// among them.
-func share(n, threads int, do func(s *scratch, task int)) {
+// share does every part once, on so many goroutines, the calling one among
+// them; each takes the next part when it is done with one.
+func share(parts []block, threads int, do func(s *scratch, part block)) {
 	var next atomic.Int64
 	work := func() {
-		withScratch(func(s *scratch) {
-			for task := int(next.Add(1)) - 1; task < n; task = int(next.Add(1)) - 1 {
-				do(s, task)
-			}
-		})
+		s := borrow()
+		for i := int(next.Add(1)) - 1; i < len(parts); i = int(next.Add(1)) - 1 {
+			do(s, parts[i])
+		}
+		s.giveBack()
 	}
 	var others sync.WaitGroup
-	for range min(threads, n) - 1 {
+	for range min(threads, len(parts)) - 1 {
 		others.Go(work)
 	}
 	work()

@@ -37,13 +37,7 @@ func (im implementation) Dsyrk(ul blas.Uplo, tA blas.Transpose, n, k int, alpha 
 	}
 	left := operand{a, lda, tA != blas.NoTrans}
 	p := product{alpha: alpha, a: left, b: left.flipped(), k: k, beta: beta, c: triangle}
-	threads := im.workers(n * (n + 1) / 2 * k)
-	if threads == 1 {
-		withScratch(func(s *scratch) { p.compute(im.kernel, s) })
-		return
-	}
-	parts := cutTriangle(ul, n, threads, im.kernel)
-	share(len(parts), threads, func(s *scratch, i int) { p.part(parts[i]).compute(im.kernel, s) })
+	im.run(p, n*(n+1)/2*k, func(threads int) []block { return cutTriangle(ul, n, threads, im.kernel) })
 }
 
 // cutTriangle divides a triangle over so many threads: into squares on the

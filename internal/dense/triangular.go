@@ -85,23 +85,29 @@ func (im implementation) Dtrsm(side blas.Side, ul blas.Uplo, tA blas.Transpose, 
 	t, x := triangle{size, a, lda, ul, tA, d}, matrix{rows: m, columns: n, data: b, stride: ldb}
 	threads := im.workers(m * n * size / 2)
 	each := roundUp(ceilDiv(systems, threads), im.kernel.width)
+	solve := im.solve
 	if side == blas.Right {
-		// X * op(A) = alpha * B is op(A)ᵀ * Xᵀ = alpha * Bᵀ.
-		t = t.transposed()
 		each = min(each, turnedMost)
+		solve = im.solveTurned
 	}
-	share(ceilDiv(systems, each), threads, func(s *scratch, i int) {
-		first, count := i*each, min(each, systems-i*each)
+	var parts []block
+	for first := 0; first < systems; first += each {
+		count := min(each, systems-first)
 		if side == blas.Left {
-			im.solve(t, alpha, x.part(block{0, first, m, count}), s)
-			return
+			parts = append(parts, block{0, first, m, count})
+		} else {
+			parts = append(parts, block{first, 0, count, n})
 		}
-		rows := x.part(block{first, 0, count, n})
-		turned := matrix{rows: n, columns: count, data: grow(&s.turned, n*count), stride: count}
-		packAlong(turned.data, rows.data, rows.stride, n, count, count)
-		im.solve(t, alpha, turned, s)
-		unpackAlong(rows.data, turned.data, rows.stride, n, count)
-	})
+	}
+	share(parts, threads, func(s *scratch, b block) { solve(t, alpha, x.part(b), s) })
+}
+
+// solveTurned solves X * t = alpha * B as the transposed system on the left.
+func (im implementation) solveTurned(t triangle, alpha float64, x matrix, s *scratch) {
+	turned := matrix{rows: x.columns, columns: x.rows, data: grow(&s.turned, x.rows*x.columns), stride: x.rows}
+	packAlong(turned.data, x.data, x.stride, turned.rows, turned.columns, turned.columns)
+	im.solve(t.transposed(), alpha, turned, s)
+	unpackAlong(x.data, turned.data, x.stride, turned.rows, turned.columns)
 }
 
 // solve solves t * X = alpha * B, where x holds B and then X. The half of
