@@ -133,7 +133,7 @@ func (r *recorder) fold(b *block, _ int, f *fold) {
 }
 
 func (d *Design) choice(at int, mse float64) Choice {
-	c := Choice{Penalty: d.opt.Penalties[at], InnerMSE: mse}
+	c := Choice{Penalty: d.opt.Penalties[at], InnerMSE: max(mse, 0)} // rounding may leave a little less than 0
 	switch {
 	case len(d.opt.Penalties) == 1:
 	case at == 0:

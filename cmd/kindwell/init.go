@@ -27,6 +27,9 @@ column is called, not what you ask. An existing study.yaml is never replaced.`,
 				fmt.Fprintln(cmd.OutOrStdout(), line)
 			}
 			fmt.Fprintf(cmd.OutOrStdout(), "wrote %s; look it over, then: kindwell check %s\n", written.Path, written.Path)
+			if written.Trouble != nil {
+				return fmt.Errorf("the study does not run yet:\n%w", written.Trouble)
+			}
 			return nil
 		},
 	}

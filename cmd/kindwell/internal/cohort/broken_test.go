@@ -137,7 +137,7 @@ var brokenInputs = []study{
 
 	// Numbers.
 	{name: "decimal comma", people: "person,age\nA,\"30,5\"\n" + rows("B%d,31\n", 9),
-		want: "people.csv:2: column \"age\": \"30,5\": is not a number: decimal commas are not read; write a decimal point; 9 of the 10 cells of this column are numbers (if they are codes of categories, begin each with a letter)"},
+		want: "people.csv:2: column \"age\": \"30,5\": is not a number: commas are not read; write a decimal point, and nothing between thousands; 9 of the 10 cells of this column are numbers (if they are codes of categories, begin each with a letter)"},
 	{name: "digit groups", traits: "person,income\nA,1'000\nB,2000\n", people: pair, in: numeric("income"),
 		want: "traits.csv:2: column \"income\": \"1'000\": is not a number: write it without marks between groups of digits"},
 	{name: "percent", traits: "person,share\nA,12 %\nB,2\n", people: pair, in: numeric("share"),

@@ -158,7 +158,7 @@ func whyNoNumber(cell string) string {
 	}
 	switch {
 	case strings.Count(cell, ",") == 1 && plain(strings.Replace(cell, ",", ".", 1)):
-		return "is not a number: decimal commas are not read; write a decimal point"
+		return "is not a number: commas are not read; write a decimal point, and nothing between thousands"
 	case strings.ContainsAny(cell, ",_' \u00a0\u202f") && plain(strings.Map(dropGroups, cell)):
 		return "is not a number: write it without marks between groups of digits"
 	case strings.HasPrefix(cell, "\u2212") && plain("-"+strings.TrimPrefix(cell, "\u2212")):

@@ -20,7 +20,7 @@ type Checked struct {
 	Files     []CheckedFile  `json:"files"`
 	Relations []Relation     `json:"relations"`
 	Measures  int            `json:"measures"`
-	Sessions  string         `json:"sessions,omitempty"`
+	Sessions  *Sessions      `json:"sessions,omitempty"`
 	Missing   []Missing      `json:"missing"`
 	Groups    []CheckedGroup `json:"people_groups"`
 	Variables int            `json:"variables"`
@@ -28,6 +28,13 @@ type Checked struct {
 	DetectableA2 Float    `json:"detectable_a2"`
 	Work         []string `json:"work"`
 	Warnings     []Note   `json:"warnings"`
+}
+
+// Sessions counts the sessions of the measures.
+type Sessions struct {
+	Sessions int `json:"sessions"`
+	People   int `json:"people"`
+	Several  int `json:"people_with_two_or_more"`
 }
 
 // CheckedFile is one input table.
@@ -117,9 +124,13 @@ func CheckText(w io.Writer, c Checked) error {
 	if c.Title != "" {
 		fmt.Fprintf(&b, "%s\n\n", c.Title)
 	}
-	fmt.Fprintf(&b, "Who is in\n  %d people in %d families, %d sibships of two or more\n", c.People, c.Families, c.Sibships)
+	fmt.Fprintf(&b, "Who is in\n  %s in %s, %s of two or more\n", people(c.People), families(c.Families), counted(c.Sibships, "sibship"))
 	if c.Measures > 0 {
-		fmt.Fprintf(&b, "  %s%s\n", counted(c.Measures, "measure"), c.Sessions)
+		fmt.Fprintf(&b, "  %s", counted(c.Measures, "measure"))
+		if s := c.Sessions; s != nil {
+			fmt.Fprintf(&b, " in %s of %s; %s with two or more", counted(s.Sessions, "session"), people(s.People), people(s.Several))
+		}
+		b.WriteString("\n")
 	}
 	checkRelations(&b, c.Relations)
 	if len(c.Missing) > 0 {
@@ -200,7 +211,7 @@ func checkRelations(b *strings.Builder, relations []Relation) {
 }
 
 func checkGroup(b *strings.Builder, number int, g CheckedGroup) {
-	fmt.Fprintf(b, "\nGroup of people %d: %s\n  %d people in %d families have everything that is needed\n", number, strings.Join(g.Traits, ", "), g.People, g.Families)
+	fmt.Fprintf(b, "\nGroup of people %d: %s\n  %s in %s with everything that is needed\n", number, strings.Join(g.Traits, ", "), people(g.People), families(g.Families))
 	if r := float64(g.DetectableR); !math.IsNaN(r) {
 		fmt.Fprintf(b, "  smallest correlation that this many independent people show with a power of 80 %%: %.2f\n", r)
 	}
@@ -228,6 +239,13 @@ func people(n int) string {
 		return "1 person"
 	}
 	return fmt.Sprintf("%d people", n)
+}
+
+func families(n int) string {
+	if n == 1 {
+		return "1 family"
+	}
+	return fmt.Sprintf("%d families", n)
 }
 
 // counted writes a number with its noun, in the plural where that takes an s.

@@ -17,6 +17,7 @@ type Found struct {
 	Folder       string // where the tables are
 	People       int
 	Families     int
+	Metric       string // the one that is tested, or would be
 	Scores       []tidy.PredictionScore
 	Heritability []tidy.Heritability
 	Covariates   []string // of the variance models
@@ -38,8 +39,8 @@ func Headline(w io.Writer, f Found) error {
 	if f.Title != "" {
 		fmt.Fprintf(&b, "%s\n", f.Title)
 	}
-	fmt.Fprintf(&b, "%d people in %d families\n", f.People, f.Families)
-	headlineScores(&b, f.Scores)
+	fmt.Fprintf(&b, "%s in %s\n", people(f.People), families(f.Families))
+	headlineScores(&b, f.Scores, f.Metric)
 	headlineShares(&b, f.Heritability, f.Covariates)
 	fmt.Fprintf(&b, "\nTables: %s", f.Folder)
 	switch {
@@ -53,11 +54,12 @@ func Headline(w io.Writer, f Found) error {
 	return err
 }
 
-// headlineScores lists the tested scores, the clearest first.
-func headlineScores(b *strings.Builder, scores []tidy.PredictionScore) {
+// headlineScores lists the scores by the metric that is tested, the clearest
+// first.
+func headlineScores(b *strings.Builder, scores []tidy.PredictionScore, metric string) {
 	var rows []tidy.PredictionScore
 	for _, s := range scores {
-		if s.Tested {
+		if s.Metric == metric {
 			rows = append(rows, s)
 		}
 	}
@@ -82,8 +84,22 @@ func headlineScores(b *strings.Builder, scores []tidy.PredictionScore) {
 
 // headlineShares lists the variables, the most clearly heritable first.
 func headlineShares(b *strings.Builder, rows []tidy.Heritability, covariates []string) {
-	rows = slices.DeleteFunc(slices.Clone(rows), func(r tidy.Heritability) bool { return math.IsNaN(r.E2) })
+	var left []string // not fitted, with the flag that says why
+	rows = slices.DeleteFunc(slices.Clone(rows), func(r tidy.Heritability) bool {
+		if math.IsNaN(r.E2) {
+			left = append(left, fmt.Sprintf("%s (%s)", r.Variable, r.Flags))
+		}
+		return math.IsNaN(r.E2)
+	})
+	defer func() {
+		if len(left) > 0 {
+			fmt.Fprintf(b, "no estimates for %d: %s; see exclusions.csv and warnings.csv\n", len(left), strings.Join(left[:min(len(left), 4)], ", ")+etc(len(left), 4))
+		}
+	}()
 	if len(rows) == 0 {
+		if len(left) > 0 {
+			b.WriteString("\nHeritable\n")
+		}
 		return
 	}
 	slices.SortStableFunc(rows, func(a, b tidy.Heritability) int {
@@ -94,7 +110,7 @@ func headlineShares(b *strings.Builder, rows []tidy.Heritability, covariates []s
 		fmt.Fprintf(b, ", covariates %s", strings.Join(covariates, ", "))
 	}
 	b.WriteString(")\n")
-	table := [][]string{{"variable", "a2", interval(0), "c2", "p", "q", "r_mz", "r_dz", "flags"}}
+	table := [][]string{{"variable", "a2", interval(0), "c2", "p", "q", "r_mz", "r_dz_same_sex", "flags"}}
 	for _, r := range rows[:min(len(rows), headlineRows)] {
 		shared := number(r.C2, 2)
 		if math.IsNaN(r.C2) && !math.IsNaN(r.D2) {
@@ -104,6 +120,14 @@ func headlineShares(b *strings.Builder, rows []tidy.Heritability, covariates []s
 	}
 	align(b, table, 1)
 	more(b, len(rows), "heritability.csv")
+}
+
+// etc ends a list of which the first few are shown.
+func etc(n, shown int) string {
+	if n > shown {
+		return ", ..."
+	}
+	return ""
 }
 
 func more(b *strings.Builder, rows int, file string) {

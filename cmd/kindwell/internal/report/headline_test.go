@@ -22,8 +22,8 @@ func score(trait string, value, p, fwer float64) tidy.PredictionScore {
 // all, and no more than twelve rows.
 func TestHeadlineOrder(t *testing.T) {
 	untested := score("untested", 0.9, 0.001, 0.001)
-	untested.Tested = false
-	f := Found{Scores: []tidy.PredictionScore{
+	untested.Metric = "r2"
+	f := Found{Metric: "r_by_fold", Scores: []tidy.PredictionScore{
 		score("missing", 0.5, math.NaN(), math.NaN()), untested,
 		score("second", 0.2, 0.01, 0.05), score("first", 0.3, 0.01, 0.05), score("third", 0.4, 0.02, 0.06),
 	}}
@@ -58,7 +58,7 @@ func TestHeadlineOrder(t *testing.T) {
 func TestHeadlineShowsD(t *testing.T) {
 	fitted, left := tidy.Blank[tidy.Heritability](), tidy.Blank[tidy.Heritability]()
 	fitted.Variable, fitted.Model, fitted.A2, fitted.D2, fitted.E2, fitted.P = "height", "ADE", 0.4, 0.35, 0.25, 3e-7
-	left.Variable, left.Model = "age", "ADE"
+	left.Variable, left.Model, left.Flags = "age", "ADE", "same_in_twins"
 	var b strings.Builder
 	if err := Headline(&b, Found{Heritability: []tidy.Heritability{left, fitted}, Covariates: []string{"sex"}}); err != nil {
 		t.Fatal(err)
@@ -69,8 +69,8 @@ func TestHeadlineShowsD(t *testing.T) {
 			t.Errorf("%q is missing in\n%s", want, text)
 		}
 	}
-	if strings.Contains(text, "age") {
-		t.Errorf("a variable that was not fitted is shown:\n%s", text)
+	if !strings.Contains(text, "no estimates for 1: age (same_in_twins)") || strings.Count(text, "age") != 1 {
+		t.Errorf("a variable that was not fitted is named at the end, once:\n%s", text)
 	}
 }
 

@@ -1,6 +1,7 @@
 package study
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"math/big"
@@ -48,6 +49,7 @@ func (p *Plan) Check() (report.Checked, error) {
 		checked.Files = append(checked.Files, report.CheckedFile{Name: f.File, SHA256: f.SHA256, Bytes: f.Bytes})
 	}
 	if p.Study.Heritability != nil {
+		warnings = append(warnings, p.checkFullModel()...)
 		pairs := p.countPairs(p.everyone())
 		checked.DetectableA2 = report.Float(twin.DetectableA2(len(pairs.mz), len(pairs.dz), detectAlpha, detectPower))
 	}
@@ -89,6 +91,35 @@ func (p *Plan) checkGroup(i int) (report.CheckedGroup, []tidy.Warning, error) {
 	return checked, notes, nil
 }
 
+// checkFullModel fits the full model to one variable, to say early that these
+// families cannot tell its components apart.
+func (p *Plan) checkFullModel() []tidy.Warning {
+	for i := range p.variables {
+		var d divided
+		v := &p.variables[i]
+		rows := p.withKnownZygosity(v, p.variableRows(v, &d), &d)
+		if sameInTwins(v.values, p.countPairs(rows)) != "" {
+			continue
+		}
+		covariates := designOf(p.Cohort, v.covariates, rows)
+		sample, err := twin.NewSample(p.Cohort.Pedigree, rows, v.valuesOf(rows), covariates.matrix, covariates.names)
+		if err != nil {
+			continue
+		}
+		full, err := twin.ParseModel(string(p.Study.Heritability.Full))
+		if err != nil {
+			panic("study: " + err.Error()) // the study file knows no other models
+		}
+		_, err = sample.Fit(full, twin.FitOptions{})
+		var unidentified *twin.UnidentifiedError
+		if errors.As(err, &unidentified) {
+			return []tidy.Warning{{Analysis: "heritability", About: "full", Message: fmt.Sprintf("%s; nothing is reported under full: %s, choose another", unidentified, full)}}
+		}
+		return nil
+	}
+	return nil
+}
+
 // shortInt writes a number of symmetries, in powers of ten when it is long.
 func shortInt(n *big.Int) string {
 	text := n.String()
@@ -123,9 +154,9 @@ func (p *Plan) sibships() int {
 }
 
 // sessions says how many sessions people have.
-func (p *Plan) sessions() string {
+func (p *Plan) sessions() *report.Sessions {
 	if p.Study.Measures == nil || p.Study.Measures.Session == "" {
-		return ""
+		return nil
 	}
 	count := map[int]int{}
 	for _, r := range p.Cohort.Measures.Rows {
@@ -137,7 +168,7 @@ func (p *Plan) sessions() string {
 			several++
 		}
 	}
-	return fmt.Sprintf(" in %d sessions of %d people; %d people have two or more", len(p.Cohort.Measures.Rows), len(count), several)
+	return &report.Sessions{Sessions: len(p.Cohort.Measures.Rows), People: len(count), Several: several}
 }
 
 // missingValues counts who lacks a variable, for those that anybody lacks.

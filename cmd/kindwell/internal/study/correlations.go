@@ -34,7 +34,7 @@ func (p *Plan) addCorrelations(v *variable, rows []int, sample *twin.Sample, d *
 		switch {
 		case errors.As(err, &few):
 		case err != nil:
-			d.warnings = append(d.warnings, tidy.Warning{Analysis: "heritability", About: v.name, Message: fmt.Sprintf("no correlation of relation %s: %s", count.Relation, plain(err))})
+			d.warnings = append(d.warnings, tidy.Warning{Analysis: "heritability", About: v.name, Message: fmt.Sprintf("no %s", plain(err))})
 		default:
 			row.Correlation, row.Low, row.High, row.Confidence = c.Value, c.Low, c.High, c.Confidence
 			row.IntervalKind = "profile"

@@ -18,6 +18,8 @@ type Drafted struct {
 	Path string
 	// Notes say what was found and guessed, a line each.
 	Notes []string
+	// Trouble is what is wrong with the tables, nil when the study runs.
+	Trouble error
 }
 
 // draftName is the file that Draft writes.
@@ -26,7 +28,7 @@ const draftName = "study.yaml"
 // Draft looks at the tables in a folder, guesses which holds the people, which
 // the measures and which the traits, and writes a commented study file. A
 // file that is there already is refused. The file is read back and its tables
-// with it; what is wrong with them is among the notes.
+// with it.
 func Draft(dir string) (*Drafted, error) {
 	path := filepath.Join(dir, draftName)
 	if _, err := os.Lstat(path); err == nil {
@@ -44,9 +46,8 @@ func Draft(dir string) (*Drafted, error) {
 		return nil, err
 	}
 	d := &Drafted{Path: path, Notes: g.notes}
-	if _, err := Open(path); err != nil {
-		d.Notes = append(d.Notes, "the study does not run yet; these need a look:", err.Error())
-	}
+	d.Notes = append(d.Notes, g.unused()...)
+	_, d.Trouble = Open(path)
 	return d, nil
 }
 
@@ -79,18 +80,23 @@ var synonyms = []struct {
 	ours  string
 	names []string
 }{
-	{"person", []string{"person", "participant_id", "participant", "person_id", "subject", "subject_id", "sub", "id"}},
-	{"family", []string{"family", "family_id", "familyid", "fam_id", "household"}},
-	{"mother", []string{"mother", "mother_id", "motherid"}},
-	{"father", []string{"father", "father_id", "fatherid"}},
-	{"twin_set", []string{"twin_set", "twinset", "twin_pair", "pair", "pair_id"}},
+	{"person", []string{"person", "participant", "subject", "subj", "sub", "individual", "id"}},
+	{"family", []string{"family", "fam", "household"}},
+	{"mother", []string{"mother"}},
+	{"father", []string{"father"}},
+	{"twin_set", []string{"twinset", "twinpair", "twin", "pair"}},
 	{"zygosity", []string{"zygosity", "zyg"}},
-	{"mz_set", []string{"mz_set"}},
-	{"reared_in", []string{"reared_in"}},
-	{"birth_order", []string{"birth_order"}},
+	{"mz_set", []string{"mzset"}},
+	{"reared_in", []string{"rearedin"}},
+	{"birth_order", []string{"birthorder"}},
 	{"sex", []string{"sex", "gender"}},
-	{"age", []string{"age", "age_years"}},
-	{"session", []string{"session", "session_id", "ses", "wave", "occasion"}},
+	{"age", []string{"age", "ageyears", "ageinyears", "ageyrs", "ageinyrs"}},
+	{"session", []string{"session", "ses", "visit", "wave", "occasion"}},
+}
+
+// bare is a name in small letters without what stands between its words.
+func bare(name string) string {
+	return strings.NewReplacer("_", "", "-", "", " ", "", ".", "").Replace(strings.ToLower(name))
 }
 
 // find returns the file's name of one of our columns, or nothing.
@@ -101,7 +107,7 @@ func find(ours string, names []string) string {
 		}
 		for _, candidate := range s.names {
 			for _, name := range names {
-				if strings.EqualFold(strings.ReplaceAll(name, " ", "_"), candidate) {
+				if plain := bare(name); plain == candidate || plain == candidate+"id" {
 					return name
 				}
 			}
@@ -115,6 +121,9 @@ func lookAround(dir string) ([]seen, error) {
 	entries, err := os.ReadDir(dir)
 	if errors.Is(err, fs.ErrNotExist) {
 		return nil, &cohort.Fault{File: dir, Message: "there is no such folder"}
+	}
+	if info, statErr := os.Stat(dir); statErr == nil && !info.IsDir() {
+		return nil, &cohort.Fault{File: dir, Message: "is no folder; name the folder that holds the tables"}
 	}
 	if err != nil {
 		return nil, err

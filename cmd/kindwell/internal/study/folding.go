@@ -3,6 +3,7 @@ package study
 import (
 	"errors"
 	"fmt"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -70,7 +71,29 @@ func (p *Plan) foldsOf(i int) (*crossval.Folds, error) {
 		f.study(p.Study, path, p.foldTrouble(err, g, names), "")
 		return nil, f.err()
 	}
+	if least := smallestFold(folds); s.Metric == config.MetricRByFold && least < leastForR {
+		var f faults
+		f.study(p.Study, path, fmt.Sprintf("%s: the smallest outer fold has %d people, and r_by_fold needs %d in each", strings.Join(g.traits, ", "), least, leastForR),
+			"ask for fewer folds, or test another metric (metric: r or r2)")
+		return nil, f.err()
+	}
 	return folds, nil
+}
+
+// leastForR is the number of people that a correlation needs.
+const leastForR = 3
+
+// smallestFold is the number of people in the smallest outer fold.
+func smallestFold(folds *crossval.Folds) int {
+	least := folds.People()
+	for _, r := range folds.Repeats {
+		size := make([]int, r.OuterCount)
+		for _, o := range r.Outer {
+			size[o]++
+		}
+		least = min(least, slices.Min(size))
+	}
+	return least
 }
 
 // foldTrouble says what is wrong with folds in the names of the study.

@@ -133,17 +133,37 @@ var confoundWords = []string{"age", "sex", "gender", "motion", "site", "scanner"
 func (g *guessed) chooseConfounds() {
 	for _, name := range g.people.table.Names() {
 		lower := strings.ToLower(name)
-		if !slices.Contains(confoundWords, lower) && !strings.HasSuffix(lower, "motion") || !g.varies(name) {
-			continue
-		}
 		// Our own name, where the column is mapped to one.
+		column := name
 		for _, ours := range []string{"age", "sex"} {
 			if find(ours, g.people.table.Names()) == name {
 				name = ours
 			}
 		}
+		known := slices.Contains(confoundWords, lower) || strings.Contains(lower, "motion") || name != column
+		if !known || !g.varies(column) {
+			continue
+		}
 		g.confounds = append(g.confounds, name)
 	}
+}
+
+// unused names the columns of people that the study makes no use of.
+func (g *guessed) unused() []string {
+	used := append(slices.Clone(g.confounds), g.people.person, g.people.session)
+	for _, s := range synonyms {
+		used = append(used, find(s.ours, g.people.table.Names()))
+	}
+	var left []string
+	for _, name := range g.people.table.Names() {
+		if !slices.Contains(used, name) {
+			left = append(left, name)
+		}
+	}
+	if len(left) == 0 {
+		return nil
+	}
+	return []string{fmt.Sprintf("not used of %s: %s", g.people.file, strings.Join(shorten(left, 12), ", "))}
 }
 
 // varies says whether a column of people has two values or more.

@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"kindwell/cmd/kindwell/internal/tidy"
@@ -46,6 +47,7 @@ func (p *Plan) divideVariances(ctx context.Context, r *Results, opt Options) err
 	if err != nil {
 		return err
 	}
+	var warnings []tidy.Warning
 	for i := range parts {
 		d := &parts[i]
 		r.Heritability = append(r.Heritability, d.headline)
@@ -55,10 +57,28 @@ func (p *Plan) divideVariances(ctx context.Context, r *Results, opt Options) err
 		r.TwinCorrelations = append(r.TwinCorrelations, d.correlations...)
 		r.FixedEffects = append(r.FixedEffects, d.fixed...)
 		r.Exclusions = append(r.Exclusions, d.exclusions...)
-		r.Warnings = append(r.Warnings, d.warnings...)
+		warnings = append(warnings, d.warnings...)
 	}
+	r.Warnings = append(r.Warnings, merged(warnings)...)
 	adjustVariances(r)
 	return nil
+}
+
+// merged joins warnings that say the same of several variables.
+func merged(warnings []tidy.Warning) []tidy.Warning {
+	var rows []tidy.Warning
+	place := map[string]int{}
+	for _, w := range warnings {
+		i, ok := place[w.Message]
+		switch {
+		case !ok:
+			place[w.Message] = len(rows)
+			rows = append(rows, w)
+		case !slices.Contains(strings.Split(rows[i].About, ";"), w.About):
+			rows[i].About += ";" + w.About
+		}
+	}
+	return rows
 }
 
 // adjustVariances fills the false discovery rates: of the headline test over
@@ -324,7 +344,7 @@ func (p *Plan) interval(v *variable, sample *twin.Sample, f *twin.Fit, q twin.Qu
 	}
 	i, err := sample.Interval(f, q, p.Study.Confidence)
 	if err != nil {
-		d.warnings = append(d.warnings, tidy.Warning{Analysis: "heritability", About: v.name, Message: fmt.Sprintf("no interval of %s under %s: %s", q, f.Model, plain(err))})
+		d.warnings = append(d.warnings, tidy.Warning{Analysis: "heritability", About: v.name, Message: fmt.Sprintf("no %s", plain(err))})
 		return math.NaN(), math.NaN()
 	}
 	return i.Low, i.High

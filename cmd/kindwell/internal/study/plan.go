@@ -103,6 +103,10 @@ func newPlan(s *config.Study, c *cohort.Cohort) (*Plan, error) {
 	if err := f.err(); err != nil {
 		return nil, err
 	}
+	p.doubt()
+	if s.Predict == nil && s.Heritability == nil {
+		p.warn("study", "", "neither predict nor heritability is asked for: a run counts relations and nothing else")
+	}
 	if s.Predict != nil {
 		p.choosePredicting()
 		p.makeGroups()

@@ -76,6 +76,7 @@ func (p *Plan) predictGroup(ctx context.Context, i int, tests *testBook, scores 
 	if series != nil {
 		steps *= series.Len()
 	}
+	r.Warnings = append(r.Warnings, emptyTraits(g, traits, residuals)...)
 	stage := opt.Progress.Stage(fmt.Sprintf("prediction of %s", strings.Join(shorten(g.traits, 3), ", ")), steps)
 	defer stage.Done()
 	var all []fitted
@@ -96,12 +97,30 @@ func (p *Plan) predictGroup(ctx context.Context, i int, tests *testBook, scores 
 	return nil
 }
 
+// emptyTraits warns of traits that leave nothing to be predicted.
+func emptyTraits(g *group, traits, residuals *mat.Dense) []tidy.Warning {
+	var rows []tidy.Warning
+	for j, name := range g.traits {
+		message := ""
+		switch {
+		case distinct(mat.Col(nil, j, traits)) == 1:
+			message = "the trait is constant: there is nothing to predict"
+		case mat.Norm(residuals.ColView(j), 2) == 0:
+			message = "the confounds explain the trait entirely: there is nothing left to predict"
+		default:
+			continue
+		}
+		rows = append(rows, tidy.Warning{Analysis: "prediction", About: name, Message: message})
+	}
+	return rows
+}
+
 // enoughPeople refuses a group in which nothing can be held out.
 func (p *Plan) enoughPeople(g *group) error {
 	if families := p.familyCount(g.rows); families < 4 {
 		var f faults
 		f.study(p.Study, "traits.use", fmt.Sprintf("%s: %d people in %d families have the trait, every confound and every measure; that is too few to hold families out",
-			strings.Join(g.traits, ", "), len(g.rows), families), "look at the missing values that kindwell check counts")
+			strings.Join(g.traits, ", "), len(g.rows), families), p.mostMissing(g.traits))
 		return f.err()
 	}
 	return nil

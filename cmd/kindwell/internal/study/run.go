@@ -4,6 +4,7 @@ import (
 	"context"
 	"runtime"
 	"slices"
+	"strings"
 	"time"
 
 	"kindwell/cmd/kindwell/internal/tidy"
@@ -77,6 +78,9 @@ func (p *Plan) Run(ctx context.Context, opt Options) (*Results, error) {
 		if err := p.divideVariances(ctx, r, opt); err != nil {
 			return nil, err
 		}
+	}
+	if len(opt.Only) > 0 {
+		r.Warnings = append(r.Warnings, tidy.Warning{Analysis: "study", Message: "only " + strings.Join(opt.Only, ", ") + " was asked for on the command line; tables of other analyses are empty"})
 	}
 	r.warnOfFormulas()
 	r.record = p.newRecord(opt, started, r)

@@ -101,9 +101,26 @@ func (p *Plan) matchOne(pattern, path string, faults *faults) []int {
 	names := p.Cohort.Measures.Names
 	matched, _ := cohort.Match([]string{pattern}, names)
 	if len(matched) == 0 {
-		faults.name(p.Study, path, fmt.Sprintf("%q matches no column of the measures", pattern), pattern, names)
+		faults.name(p.Study, path, fmt.Sprintf("%q matches no column of the measures", pattern), pattern, p.measureColumns())
 	}
 	return matched
+}
+
+// measureColumns are all columns of the measures tables, looked at or not.
+func (p *Plan) measureColumns() []string {
+	var all []string
+	for _, file := range p.Study.Measures.Tables() {
+		names, err := cohort.ReadNames(p.Study.Path("."), file)
+		if err != nil {
+			return p.Cohort.Measures.Names
+		}
+		for _, name := range names {
+			if name != p.Study.Measures.Session && name != "person" && name != p.Study.Measures.Columns.Person {
+				all = append(all, name)
+			}
+		}
+	}
+	return all
 }
 
 // closure is how far the parts of a whole may miss it before it is said.

@@ -93,7 +93,7 @@ func (r *Results) Write(f *tidy.Folder) error {
 		func() error { return tidy.WriteTable(f, r.FixedEffects) },
 		func() error { return tidy.WriteTable(f, r.Exclusions) },
 		func() error { return tidy.WriteTable(f, r.Warnings) },
-		func() error { return f.File("study_as_run.yaml", r.plan.Study.AsRun()) },
+		func() error { return f.File("study_as_run.yaml", r.plan.asRun()) },
 		func() error { return f.File(tidy.RecordName, append(text, '\n')) },
 		func() error { return f.Commit() },
 	} {
@@ -104,15 +104,26 @@ func (r *Results) Write(f *tidy.Folder) error {
 	return nil
 }
 
+// asRun is the study with every default written out, under a line that says
+// where its file names count from.
+func (p *Plan) asRun() []byte {
+	head := "# The study as it was run. File names count from the folder of the study file:\n" +
+		"# to run it again, put this file beside that one and name another output folder.\n"
+	return append([]byte(head), p.Study.AsRun()...)
+}
+
 // warnOfFormulas names the identifier cells that a spreadsheet would run.
 func (r *Results) warnOfFormulas() {
 	var cells []tidy.FormulaCell
-	cells = append(cells, tidy.FormulaCells(r.Predictions)...)
-	cells = append(cells, tidy.FormulaCells(r.Folds)...)
-	cells = append(cells, tidy.FormulaCells(r.InnerFolds)...)
-	cells = append(cells, tidy.FormulaCells(r.Exclusions)...)
-	cells = append(cells, tidy.FormulaCells(r.PredictionScores)...)
-	cells = append(cells, tidy.FormulaCells(r.Heritability)...)
+	for _, found := range [][]tidy.FormulaCell{
+		tidy.FormulaCells(r.PeopleGroups), tidy.FormulaCells(r.PredictionScores), tidy.FormulaCells(r.Predictions),
+		tidy.FormulaCells(r.Penalties), tidy.FormulaCells(r.Folds), tidy.FormulaCells(r.InnerFolds), tidy.FormulaCells(r.Weights),
+		tidy.FormulaCells(r.Heritability), tidy.FormulaCells(r.VarianceComponents), tidy.FormulaCells(r.VarianceModels),
+		tidy.FormulaCells(r.VarianceTests), tidy.FormulaCells(r.TwinCorrelations), tidy.FormulaCells(r.FixedEffects),
+		tidy.FormulaCells(r.Exclusions), tidy.FormulaCells(r.Warnings),
+	} {
+		cells = append(cells, found...)
+	}
 	type place struct{ table, column string }
 	count := map[place]int{}
 	var order []place
@@ -137,6 +148,9 @@ func (r *Results) Headline() report.Found {
 		People: len(p.Cohort.People), Families: p.Cohort.Pedigree.Families(),
 		Scores: r.PredictionScores, Heritability: r.Heritability,
 		Warnings: len(r.Warnings), Exclusions: len(r.Exclusions),
+	}
+	if p.Study.Predict != nil {
+		found.Metric = string(p.Study.Predict.Metric)
 	}
 	if p.Study.Heritability != nil {
 		found.Covariates = p.Study.Heritability.Covariates

@@ -34,7 +34,7 @@ observation. Numbers have a decimal point and the fewest digits that read back
 as the same 64-bit number, with an exponent below 0.000001 and from 1e21 on. A
 missing value is an empty cell, an infinite number is INF or -INF, truth values
 are true and false. The same descriptions, with the type, the unit and the
-possible values of every column and the size and SHA-256 of every file, are in
+possible values of every column and the size and SHA-256 of every file but run.json, are in
 datapackage.json (Frictionless Data Package, version 2).
 
 A unit of 1 marks a share, a probability, a correlation or another number

@@ -46,7 +46,7 @@ var declarations = sync.OnceValue(func() []*Table {
 		declare[Fold]("folds", "Folds", "One row is a person in one repeat: the outer fold in which that person is held out."),
 		declare[InnerFold]("inner_folds", "Inner folds", "One row is a training person of an outer fold: the inner fold that holds the person while the penalty is chosen."),
 		declare[Weight]("weights", "Weights", "One row is a measure of a set: its part in the prediction of a trait."),
-		declare[Heritability]("heritability", "Heritability", "One row is a variable: the shares of its variance by the headline model, with intervals, test and twin correlations."),
+		declare[Heritability]("heritability", "Heritability", "One row is a variable: the shares of its variance by the headline model, with intervals, test and twin correlations. p is that of A given C (unbounded CE against unbounded ACE) when the headline model is ACE or ADE, of AE against E when it is AE, and empty for CE; it can be small where a2 is 0, namely where the signed c2 is below 0 (see suggests_dominance)."),
 		declare[VarianceComponent]("variance_components", "Variance components", "One row is a component of a variance model of a variable."),
 		declare[VarianceModel]("variance_models", "Variance models", "One row is a variance model fitted to a variable: its likelihood and criteria."),
 		declare[VarianceTest]("variance_tests", "Variance tests", "One row is a comparison of two variance models of a variable."),

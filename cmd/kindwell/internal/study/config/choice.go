@@ -96,7 +96,7 @@ const (
 func (LearnedOn) Choices() []Choice {
 	return []Choice{
 		{Name: string(OtherPeople), Meaning: "on people outside this study"},
-		{Name: string(SamePeople), Meaning: "on people of this study: a leak that no fold can mend, and the report says so"},
+		{Name: string(SamePeople), Meaning: "on people of this study: a leak that no fold can mend, and a warning says so"},
 		{Name: string(PerFold), Meaning: "on the training people of each fold", Later: true},
 		{Name: string(NoStates), Meaning: "the measures do not come from learned states"},
 	}

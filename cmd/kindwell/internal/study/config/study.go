@@ -141,7 +141,7 @@ func tables(file string, files []string) []string {
 
 // Confounds are columns of people whose influence is taken out.
 type Confounds struct {
-	Use        []string    `yaml:"use" jsonschema:"uniqueItems=true" help:"columns of people; text columns become indicator columns"`
+	Use        []string    `yaml:"use" jsonschema:"uniqueItems=true" help:"columns of people or of the trait tables, by our names where they are mapped; text columns become indicator columns"`
 	Squares    []string    `yaml:"squares" jsonschema:"uniqueItems=true" help:"columns in use whose square is added"`
 	Products   [][2]string `yaml:"products" jsonschema:"uniqueItems=true" help:"pairs of columns in use whose product is added"`
 	RareLevels RareLevels  `yaml:"rare_levels" jsonschema:"default=refuse" help:"what is done with a level that folds cannot keep in every training set"`
