@@ -245,18 +245,13 @@ func (l *likelihood) restrict(p *point) {
 // not positive.
 func invert(v []float64, k int) (logDet, pivot float64) {
 	pivot = math.Inf(1)
-	det := 1.0
 	for p := range k {
 		d := v[p*k+p]
 		pivot = min(pivot, d)
 		if !(d > leastPivot) {
 			return 0, min(pivot, 0)
 		}
-		det *= d
-		if det < 1e-250 || det > 1e250 {
-			logDet += math.Log(det)
-			det = 1
-		}
+		logDet += math.Log(d)
 		d = 1 / d
 		row := v[p*k : (p+1)*k]
 		row[p] = 1
@@ -278,7 +273,7 @@ func invert(v []float64, k int) (logDet, pivot float64) {
 			}
 		}
 	}
-	return logDet + math.Log(det), pivot
+	return logDet, pivot
 }
 
 // largestLoop is the size up to which plain loops beat a call of the dense

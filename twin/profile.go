@@ -254,11 +254,13 @@ func (p *profile) rise(t float64) (float64, error) {
 		}
 	}
 	f, ok := p.follow(near, t)
-	if p.bounded && len(p.inside)+len(p.outside) > 2 {
+	if p.bounded {
 		// A bound may hide a lower minimum from the path.
-		other, fine := p.search(t).from(p.even(t))
-		if fine && other.converged && other.pivot > leastDistance && (!ok || better(other, f, p.lik.people)) {
-			f, ok = other, true
+		for _, w := range p.starts(t) {
+			other, fine := p.search(t).from(w)
+			if fine && other.converged && other.pivot > leastDistance && (!ok || better(other, f, p.lik.people)) {
+				f, ok = other, true
+			}
 		}
 	}
 	if !ok {
@@ -355,15 +357,30 @@ func (p *profile) tangent(w []float64, t float64) []float64 {
 	return moved
 }
 
-// even returns shares with the inside summing to t, alike inside and alike
-// outside.
-func (p *profile) even(t float64) []float64 {
-	w := make([]float64, len(p.inside)+len(p.outside))
-	for _, j := range p.inside {
-		w[j] = t / float64(len(p.inside))
+// starts are shares with the inside summing to t: for each share of a group of
+// two or more, that one large in it.
+func (p *profile) starts(t float64) [][]float64 {
+	var all [][]float64
+	for _, g := range [][]int{p.inside, p.outside} {
+		if len(g) == 1 {
+			continue
+		}
+		for _, main := range g {
+			w := make([]float64, len(p.inside)+len(p.outside))
+			fill := func(members []int, total float64) {
+				for _, j := range members {
+					w[j] = total / float64(len(members))
+				}
+			}
+			fill(p.inside, t)
+			fill(p.outside, 1-t)
+			total := w[main] * float64(len(g))
+			for _, j := range g {
+				w[j] = 0.1 * total / float64(len(g)-1)
+			}
+			w[main] = 0.9 * total
+			all = append(all, w)
+		}
 	}
-	for _, j := range p.outside {
-		w[j] = (1 - t) / float64(len(p.outside))
-	}
-	return w
+	return all
 }

@@ -183,6 +183,15 @@ func TestOrderOfFits(t *testing.T) {
 			if err != nil {
 				r.Fatal(err)
 			}
+			same := true // the tested variances are all 0
+			for _, e := range fits[p[1]].Components {
+				if !p[0].Has(e.Component) {
+					same = same && e.Share == 0
+				}
+			}
+			if same && test.Ratio != 0 {
+				r.Fatalf("ratio %g of equal fits", test.Ratio)
+			}
 			if test.P < 0 || test.P > 1 || test.Ratio < 0 || (test.Ratio == 0) != (test.PMixture == 1) {
 				r.Fatalf("%+v", test)
 			}
@@ -218,6 +227,39 @@ func TestInbreeding(t *testing.T) {
 		t.Fatal(err)
 	}
 	mustFit(t, s, ModelAE)
+
+	// The diagonal of K is uneven: the total variance takes its part of the
+	// information, tr(B_j B_k) - tr(B_j) tr(B_k)/n.
+	f := familySample{kin: k.tableKin, y: y}
+	information := func(a, b Component) float64 {
+		var sum, traceA, traceB float64
+		x, z := f.component(a), f.component(b)
+		for i := range y {
+			for j := range y {
+				u, v := x.At(i, j), z.At(i, j)
+				for _, m := range []struct {
+					of   Component
+					into *float64
+				}{{a, &u}, {b, &v}} {
+					if m.of == A && k.family[i] == k.family[j] {
+						*m.into = k.Kinship(i, j)
+					}
+					if i == j {
+						*m.into--
+					}
+				}
+				if i == j {
+					traceA += u
+					traceB += v
+				}
+				sum += u * v
+			}
+		}
+		return sum - traceA*traceB/float64(len(y))
+	}
+	rho := information(A, C) / math.Sqrt(information(A, A)*information(C, C))
+	near(t, "weight of two degrees of freedom", mixture(s.likelihood(ModelACE, ML))[2], math.Acos(rho)/(2*math.Pi), 1e-12)
+
 	_, err = s.Fit(ModelADE, FitOptions{})
 	var inbred *InbreedingError
 	if !errors.As(err, &inbred) || inbred.Person != 4 {

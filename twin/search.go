@@ -68,7 +68,6 @@ func newSearch(lik *likelihood, groups []group, bounded bool) *search {
 // stay there while the deviance would rise (active set).
 func (s *search) from(start []float64) (found, bool) {
 	w := append([]float64(nil), start...)
-	s.balance(w)
 	next := make([]float64, len(w))
 	m := len(w) - 1
 	if !s.lik.at(w[:m], s.point) {
@@ -92,9 +91,9 @@ func (s *search) from(start []float64) (found, bool) {
 		for range 60 {
 			for j := range w {
 				next[j] = w[j] + t*s.step[j]
-			}
-			if hit >= 0 {
-				next[hit] = 0
+				if j == hit || s.bounded && next[j] < 0 {
+					next[j] = 0
+				}
 			}
 			s.balance(next)
 			if s.lik.at(next[:m], s.point) && s.point.deviance <= before-1e-4*t*fall+slack {
@@ -296,18 +295,9 @@ func (s *search) longest(w []float64) (t float64, hit int) {
 	if !s.bounded {
 		return t, hit
 	}
-	for _, g := range s.groups {
-		r := s.reference(g, w)
-		for _, j := range g.members {
-			switch d := s.step[j]; {
-			case d >= 0 || w[j]+t*d > 0:
-			case j == r:
-				// The reference is no candidate for a bound; another share will
-				// have outgrown it at the next step.
-				t, hit = 0.9*w[j]/-d, -1
-			default:
-				t, hit = w[j]/-d, j
-			}
+	for j, d := range s.step {
+		if d < 0 && w[j]+t*d <= 0 {
+			t, hit = w[j]/-d, j
 		}
 	}
 	return t, hit
