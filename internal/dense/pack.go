@@ -120,11 +120,7 @@ func packAcross(dst, src []float64, stride, depth, vectors, group int) {
 	default:
 		for l := range depth {
 			to := dst[l*group : (l+1)*group]
-			from := src[l*stride : l*stride+vectors]
-			for i, v := range from {
-				to[i] = v
-			}
-			clear(to[vectors:])
+			clear(to[copy(to, src[l*stride:l*stride+vectors]):])
 		}
 	}
 }
