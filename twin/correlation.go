@@ -60,13 +60,14 @@ func siblings(r Relation) bool { return r >= MZ && r <= HalfSibling }
 // Lineage for these two relations.
 //
 // The errors are *TooFewError where fewer families have such a pair than there
-// are fixed effects and two more, ErrNoVariance, and *NotConvergedError.
+// are fixed effects and two more, ErrNoVariance, and *NotConvergedError. The
+// counts are filled in even then, and numbers that could not be found are NaN.
 // Relations other than these panic.
 func (s *Sample) Correlation(r Relation, opt CorrelationOptions) (*Correlation, error) {
 	if !(opt.Confidence > 0 && opt.Confidence < 1) {
 		panic("twin: confidence must lie between 0 and 1")
 	}
-	c := &Correlation{Relation: r, Confidence: opt.Confidence}
+	c := &Correlation{Relation: r, Confidence: opt.Confidence, Value: math.NaN(), Low: math.NaN(), High: math.NaN()}
 	switch {
 	case siblings(r):
 		return c, s.intraclass(c)
@@ -119,11 +120,12 @@ func (s *Sample) intraclass(c *Correlation) error {
 		return &NotConvergedError{What: "correlation of relation " + c.Relation.String()}
 	}
 	p := &profile{lik: lik, inside: []int{0}, outside: upTo(m + 1)[1:]}
+	c.Value = least.shares[0]
 	i, err := p.interval(least.shares, c.Confidence)
 	if err != nil {
 		return &NotConvergedError{What: "interval of the correlation of relation " + c.Relation.String()}
 	}
-	c.Value, c.Low, c.High = i.Estimate, i.Low, i.High
+	c.Low, c.High = i.Low, i.High
 	return nil
 }
 

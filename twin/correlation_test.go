@@ -87,8 +87,12 @@ func TestExactTwinCorrelations(t *testing.T) {
 		t.Errorf("%d opposite-sex pairs, want 50", dz.Pairs)
 	}
 	var few *TooFewError
-	if _, err := s.Correlation(DZSameSex, confident); !errors.As(err, &few) || few.Have != 0 {
+	none, err := s.Correlation(DZSameSex, confident)
+	if !errors.As(err, &few) || few.Have != 0 || few.Need != 3 {
 		t.Errorf("no such pairs: error %v", err)
+	}
+	if none.Pairs != 0 || !math.IsNaN(none.Value) || !math.IsNaN(none.Low) || !math.IsNaN(none.High) {
+		t.Errorf("no such pairs: %+v", none)
 	}
 }
 

@@ -30,12 +30,11 @@ func (k *tableKin) Len() int         { return len(k.family) }
 func (k *tableKin) Mother(i int) int { return k.mother[i] }
 func (k *tableKin) Father(i int) int { return k.father[i] }
 
-// Kinship by recursion over the parents of the later person; parents come
-// before their children in the table or are ids of nobody in it.
+// Kinship goes up through the parents of the deeper person. Parents are in the
+// table or have ids beyond it.
 func (k *tableKin) Kinship(i, j int) float64 { return k.twiceKinship(i, j) }
 
-// People beyond the table are founders, named by their id plus the length of
-// the table.
+// People beyond the table are founders.
 func (k *tableKin) parents(i int) [2]int {
 	if i >= len(k.family) {
 		return [2]int{-1, -1}
@@ -136,9 +135,8 @@ func (k *tableKin) Relation(i, j int) Relation {
 // left before it.
 func founder(n, i int) int { return n + i }
 
-// sibships adds families of twins and siblings: each entry is the number of
-// children, the first two of which are twins when zygosity is MZ or DZ
-// ('m' or 'd'), or all of them siblings ('s').
+// sibships are families of so many children each. The first two are MZ twins
+// ('m'), twins of both sexes ('d'), or siblings like the others ('s').
 func sibships(kinds []byte, sizes []int) *tableKin {
 	k := &tableKin{}
 	n := 0

@@ -193,7 +193,7 @@ func (p *profile) limit(estimate, sign, root float64) (at float64, bound bool, e
 		case e > 0:
 			outside, high = d, e
 		case d == edge:
-			return estimate + sign*edge, true, nil
+			return (1 + sign) / 2, true, nil
 		default:
 			inside, low = d, e
 		}
@@ -208,8 +208,8 @@ func (p *profile) limit(estimate, sign, root float64) (at float64, bound bool, e
 			if p.bounded {
 				return 0, false, errProfile
 			}
-			// The likelihood has not fallen enough where V ends to be positive
-			// definite, or to have a maximum that belongs to the fit's.
+			// Before the likelihood has fallen enough, V ceases to be positive
+			// definite, or the profile to have a maximum that belongs to the fit.
 			return estimate + sign*inside, true, nil
 		}
 	}

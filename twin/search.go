@@ -46,7 +46,6 @@ type move struct {
 type found struct {
 	shares    []float64
 	deviance  float64
-	slope     float64 // of the deviance, from the second group's total to the first's
 	pivot     float64 // smallest pivot of V there
 	converged bool
 }
@@ -113,11 +112,7 @@ func (s *search) from(start []float64) (found, bool) {
 		}
 		copy(w, next)
 	}
-	f := found{shares: w, deviance: s.point.deviance, pivot: s.lik.pivot, converged: converged}
-	if len(s.groups) == 2 {
-		f.slope = s.slope(s.reference(s.groups[0], w), s.reference(s.groups[1], w))
-	}
-	return f, true
+	return found{shares: w, deviance: s.point.deviance, pivot: s.lik.pivot, converged: converged}, true
 }
 
 // balance makes the shares of each group add to its total exactly.

@@ -97,10 +97,10 @@ func TestSignedRootHasASign(t *testing.T) {
 	}
 }
 
-// Weights for E against ACE and ADE in a sample with share p of MZ pairs, from
-// rho = (p + (1-p)/2) / sqrt(p + (1-p)/4), w2 = arccos(rho) / (2 pi), and the
-// like with 1/4 and 1/16; checked by simulation there (checks by Dominicus et
-// al. 2006 for the kind of mixture).
+// Weights for E against ACE and ADE in a sample with share p of MZ pairs (the
+// kind of mixture: Dominicus et al. 2006). By hand, w2 = arccos(rho) / (2 pi)
+// with rho = (p + (1-p)/2) / sqrt(p + (1-p)/4); for ADE the DZ pairs count 1/4
+// beside 1/2.
 func TestMixtureWeights(t *testing.T) {
 	for _, c := range []struct {
 		mz, dz int
