@@ -243,7 +243,7 @@ func (e *Exchange) Count() *big.Int {
 
 // Log10 returns the decimal logarithm of Count.
 func (e *Exchange) Log10() float64 {
-	if count, ok := e.upTo(1 << 53); ok {
+	if count, ok := e.upTo(int(min(int64(1)<<53, math.MaxInt))); ok {
 		return math.Log10(float64(count))
 	}
 	sum := 0.0

@@ -86,7 +86,7 @@ func TestStagesDoNotMatter(t *testing.T) {
 		q := invent(shapes()[name], 4)
 		for _, metric := range Metrics() {
 			opt := Options{Penalties: q.penalties, FillMissing: true, Metric: metric}
-			whole, err := newDesign(q.measures, nil, q.confounds, q.folds, opt, 1<<40)
+			whole, err := newDesign(q.measures, nil, q.confounds, q.folds, opt, 1<<30)
 			if err != nil {
 				t.Fatal(err)
 			}

@@ -123,7 +123,7 @@ func unpack(r io.Reader, packed bool, size int64) (text []byte, why string) {
 		r = z
 	}
 	var buffer bytes.Buffer
-	buffer.Grow(int(min(size, maxBytes)) + bytes.MinRead)
+	buffer.Grow(int(min(size, maxBytes/2)) + bytes.MinRead)
 	_, err := buffer.ReadFrom(io.LimitReader(r, maxBytes+1))
 	switch {
 	case errors.Is(err, io.ErrUnexpectedEOF):
@@ -132,7 +132,7 @@ func unpack(r io.Reader, packed bool, size int64) (text []byte, why string) {
 		return nil, "the packed file is damaged; copy it anew"
 	case err != nil:
 		return nil, "cannot be read: " + plainError(err)
-	case buffer.Len() > maxBytes:
+	case int64(buffer.Len()) > maxBytes:
 		return nil, "is larger than 2 GiB; leave out columns that the study does not use"
 	}
 	return buffer.Bytes(), ""
