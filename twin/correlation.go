@@ -48,9 +48,11 @@ func siblings(r Relation) bool { return r >= MZ && r <= HalfSibling }
 //
 // where B_k is 1 for the pairs of relation k. Whole sibships enter, so that
 // pairs of one sibship are not taken for independent, and relations of siblings
-// other than the asked one have correlations of their own; one that is found in
-// too few families for that is taken out with the second of its two people. The
-// interval is the profile likelihood's.
+// other than the asked one have correlations of their own. Fraternal twins, twins
+// of unknown zygosity and siblings that are found in too few families for that
+// share one; other relations as rare are taken out with both of their people.
+// Pairs and Families count what is left. The interval is the profile
+// likelihood's.
 //
 // A parent and a child, or a mother and a father, differ in kind: their
 // correlation is interclass. Over all pairs, parents (mothers) are regressed on
@@ -87,7 +89,7 @@ func (s *Sample) relation(i, j int32) Relation { return s.kin.Relation(s.people[
 
 // intraclass fills in the correlation of a relation among siblings.
 func (s *Sample) intraclass(c *Correlation) error {
-	who := s.withRelative(c)
+	who, as := s.withRelative(c)
 	if need := s.columns.width + 1; c.Families < need {
 		// With fewer, the fixed effects can fit every difference of a pair.
 		return tooFewPairs(c, need)
@@ -102,10 +104,10 @@ func (s *Sample) intraclass(c *Correlation) error {
 		var e entries
 		if i != j {
 			if r := s.relation(who[i], who[j]); siblings(r) {
-				at, ok := place[r]
+				at, ok := place[as[r]]
 				if !ok {
 					at = len(place)
-					place[r] = at
+					place[as[r]] = at
 				}
 				e[at] = 1
 			}
@@ -115,7 +117,7 @@ func (s *Sample) intraclass(c *Correlation) error {
 	m := len(place)
 	lik := newLikelihood(newMoments(l, columns.rows, columns.width), upTo(m), ML)
 	search := newSearch(lik, []group{{upTo(m + 1), 1}}, false)
-	least, ok := best(search, correlationStarts(m))
+	least, ok := best(search, correlationStarts(m), leastSignedDistance)
 	if !ok || !least.converged {
 		return &NotConvergedError{What: "correlation of relation " + c.Relation.String()}
 	}
@@ -145,54 +147,118 @@ func correlationStarts(m int) [][]float64 {
 // withRelative lists the people of a sample who have a relative of the
 // correlation's relation in it, and counts their pairs. Another relation among
 // these people has a correlation of its own to be estimated beside, for which
-// it must be found in a number of families; where it is not, the second of each
-// such two people is left out.
-func (s *Sample) withRelative(c *Correlation) []int32 {
+// it must be found in a number of families. Where fraternal twins, twins of
+// unknown zygosity or siblings are too rare, they share one correlation with
+// each other or with the most frequent of these; where that does not help, and
+// for the other relations, both people of such a pair are left out. Nothing here
+// depends on the order of people. as names, for each relation, the one whose
+// correlation it has.
+func (s *Sample) withRelative(c *Correlation) (who []int32, as [relationCount]Relation) {
 	out := make([]bool, len(s.people))
+	least := s.columns.width + rareFamilies
 	for {
-		var families, pairs [relationCount]int
-		var second [relationCount][]int32
-		in := make([]bool, len(s.people))
-		for _, members := range groupBy(len(s.people), s.familyOf) {
-			s.eachPair(members, out, func(i, j int32, r Relation) {
-				if r == c.Relation {
-					in[i], in[j] = true, true
-				}
-			})
-			var here [relationCount]bool
-			s.eachPair(members, out, func(i, j int32, r Relation) {
-				if in[i] && in[j] && siblings(r) {
-					pairs[r]++
-					second[r] = append(second[r], j)
-					if !here[r] {
-						here[r] = true
-						families[r]++
-					}
-				}
-			})
+		found := s.relationsAmong(c.Relation, out)
+		for r := range as {
+			as[r] = Relation(r)
 		}
-		rare := -1
-		for r := range families {
-			if Relation(r) != c.Relation && families[r] > 0 && families[r] < s.columns.width+rareFamilies {
-				if rare < 0 || families[r] < families[rare] {
-					rare = r
-				}
+		var rare []Relation
+		partner := Unrelated // the most frequent that has enough families
+		for r := range found.families {
+			switch n, rel := found.families[r], Relation(r); {
+			case n == 0 || rel == c.Relation:
+			case n < least:
+				rare = append(rare, rel)
+			case halfAlike(rel) && (partner == Unrelated || n > found.families[partner]):
+				partner = rel
 			}
 		}
-		if rare < 0 {
-			c.Pairs, c.Families = pairs[c.Relation], families[c.Relation]
-			var who []int32
-			for i, is := range in {
+		var left []Relation // out of those that are rare
+		var joined []Relation
+		for _, r := range rare {
+			if halfAlike(r) {
+				joined = append(joined, r)
+			} else {
+				left = append(left, r)
+			}
+		}
+		if partner == Unrelated && found.familiesWithAny(joined) < least {
+			left, joined = append(left, joined...), nil
+		}
+		for _, r := range joined {
+			if as[r] = partner; partner == Unrelated {
+				as[r] = joined[0]
+			}
+		}
+		if len(left) == 0 {
+			c.Pairs, c.Families = found.pairs[c.Relation], found.families[c.Relation]
+			for i, is := range found.in {
 				if is {
 					who = append(who, int32(i))
 				}
 			}
-			return who
+			return who, as
 		}
-		for _, j := range second[rare] {
-			out[j] = true
+		for _, pair := range found.list {
+			if slices.Contains(left, pair.relation) {
+				out[pair.i], out[pair.j] = true, true
+			}
 		}
 	}
+}
+
+// halfAlike is true for relations of the children of one mother and father who
+// are not known to be identical.
+func halfAlike(r Relation) bool { return r >= DZSameSex && r <= FullSibling }
+
+// relationsFound counts the sibling relations among some people.
+type relationsFound struct {
+	in              []bool // who has a relative of the asked relation
+	families, pairs [relationCount]int
+	list            []relatedPair
+}
+
+type relatedPair struct {
+	i, j     int32
+	family   int
+	relation Relation
+}
+
+// familiesWithAny counts the families with a pair of any of these relations.
+func (f *relationsFound) familiesWithAny(relations []Relation) int {
+	last, n := -1, 0 // pairs are listed family by family
+	for _, pair := range f.list {
+		if pair.family != last && slices.Contains(relations, pair.relation) {
+			last = pair.family
+			n++
+		}
+	}
+	return n
+}
+
+// relationsAmong counts the relations among those who have a relative of the
+// asked relation, without the people in out.
+func (s *Sample) relationsAmong(asked Relation, out []bool) *relationsFound {
+	found := &relationsFound{in: make([]bool, len(s.people))}
+	for number, members := range groupBy(len(s.people), s.familyOf) {
+		s.eachPair(members, out, func(i, j int32, r Relation) {
+			if r == asked {
+				found.in[i], found.in[j] = true, true
+			}
+		})
+		var here [relationCount]bool
+		s.eachPair(members, out, func(i, j int32, r Relation) {
+			if !found.in[i] || !found.in[j] || !siblings(r) {
+				return
+			}
+			found.list = append(found.list, relatedPair{i, j, number, r})
+			found.pairs[r]++
+			if !here[r] {
+				here[r] = true
+				found.families[r]++
+			}
+		})
+	}
+	return found
 }
 
 // rareFamilies and the number of fixed effects are what a relation beside the

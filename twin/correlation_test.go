@@ -313,8 +313,8 @@ func lowest(f func([]float64) float64, x []float64) float64 {
 }
 
 // A relation beside the asked one that few families have cannot have a
-// correlation of its own: the likelihood would run away with it. Leaving one of
-// the two people out is the same as if he had never been there.
+// correlation of its own: the likelihood would run away with it. Both people of
+// such a pair are left out, as if they had never been there, in any order.
 func TestRareRelationsAreLeftOut(t *testing.T) {
 	f := twinsWithSiblings(13, 36)
 	var rows []int
@@ -337,13 +337,63 @@ func TestRareRelationsAreLeftOut(t *testing.T) {
 		return s
 	}
 	all := mustCorrelate(t, part(rows), FullSibling, confident)
-	rows = slices.DeleteFunc(rows, func(i int) bool { return f.kin.family[i]%3 == 0 && i%4 == 1 })
+	slices.Reverse(rows)
+	backward := mustCorrelate(t, part(rows), FullSibling, confident)
+	near(t, "correlation in another order", backward.Value, all.Value, 1e-9)
+	slices.Reverse(rows)
+	rows = slices.DeleteFunc(rows, func(i int) bool {
+		return f.kin.family[i]%3 == 0 && (i%4 == 1 || i%4 == 0 && f.kin.family[i] < 12)
+	})
 	apart := mustCorrelate(t, part(rows), FullSibling, confident)
 	if all.Pairs != apart.Pairs || all.Families != apart.Families {
 		t.Errorf("%+v, want %+v", all, apart)
 	}
 	near(t, "correlation", all.Value, apart.Value, 1e-9)
 	near(t, "low", all.Low, apart.Low, 1e-9)
+}
+
+// renamed calls fraternal twins of opposite sex so below a family, and of the
+// same sex from there on.
+type renamed struct {
+	*tableKin
+	below int
+}
+
+func (k renamed) Relation(i, j int) Relation {
+	r := k.tableKin.Relation(i, j)
+	if r == DZOppositeSex && k.family[i] >= k.below {
+		return DZSameSex
+	}
+	return r
+}
+
+// Fraternal twins of opposite sex in few families share the correlation of
+// those of the same sex: everybody stays, and the order does not matter.
+func TestRareTwinsShareACorrelation(t *testing.T) {
+	f := twinsWithSiblings(13, 60)
+	correlate := func(below int, rows []int) *Correlation {
+		y := make([]float64, len(rows))
+		for at, r := range rows {
+			y[at] = f.y[r]
+		}
+		s, err := NewSample(renamed{f.kin, below}, rows, y, nil, nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return mustCorrelate(t, s, FullSibling, confident)
+	}
+	rows := upTo(len(f.y))
+	few, one, many := correlate(9, rows), correlate(0, rows), correlate(60, rows)
+	slices.Reverse(rows)
+	backward := correlate(9, rows)
+	near(t, "in another order", backward.Value, few.Value, 1e-9)
+	near(t, "as one kind", few.Value, one.Value, 1e-9)
+	if few.Pairs != one.Pairs || few.Families != one.Families {
+		t.Errorf("%+v, want %+v", few, one)
+	}
+	if math.Abs(many.Value-one.Value) < 1e-6 {
+		t.Errorf("kinds with correlations of their own change nothing: %v", many.Value)
+	}
 }
 
 // Taking all pairs of a sibship for independent makes intervals too narrow:

@@ -21,9 +21,10 @@ type Estimate struct {
 	// AtBound says that the likelihood would be higher with, or is flat
 	// towards, a variance below 0.
 	AtBound bool
-	// SignedVariance and SignedShare are the values at the highest likelihood
-	// anywhere that V is positive definite. Unlike the bounded ones they are
-	// not pushed upward by the bound; they may be negative.
+	// SignedVariance and SignedShare are the values at the maximum of the
+	// likelihood without bounds that is reached uphill from the bounded one,
+	// inside the region where V is positive definite. Unlike the bounded ones
+	// they are not pushed upward by the bound; they may be negative.
 	SignedVariance, SignedShare float64
 }
 
@@ -101,11 +102,11 @@ func (s *Sample) Fit(model Model, opt FitOptions) (*Fit, error) {
 	all := []group{{members: upTo(m + 1), total: 1}}
 	starts := startingShares(m)
 
-	bounded, ok := best(newSearch(lik, all, true), starts)
+	bounded, ok := best(newSearch(lik, all, true), starts, leastDistance)
 	if !ok {
 		return nil, ErrNoMaximum
 	}
-	signed, signedOK := best(newSearch(lik, all, false), append([][]float64{bounded.shares}, starts...))
+	signed, signedOK := nearest(newSearch(lik, all, false), bounded, starts)
 	f := &Fit{
 		Model: model, Criterion: opt.Criterion, People: s.People(), Families: s.Families(),
 		Parameters:  s.columns.width - 1 + m + 1,
@@ -191,15 +192,36 @@ func startingShares(m int) [][]float64 {
 // the edge of positive definiteness the likelihood is climbing without end.
 const leastDistance = 1e-8
 
+// leastSignedDistance is leastDistance for the unbounded model. A structure that
+// few families have can go singular there while the fixed effects take what it
+// no longer allows, so that the likelihood rises for ever: searches that run to
+// that edge stop at pivots of about 1e-8, maxima that mean something lie at those
+// of the order of e2.
+const leastSignedDistance = 1e-5
+
+// nearest returns the maximum of the unbounded model that is reached uphill from
+// the bounded one; that is the bounded one itself where no share is held at 0.
+// Higher values elsewhere, at the edge of the region where V is positive
+// definite, belong to no maximum. Only where the way uphill has no end are the
+// other starts tried.
+func nearest(s *search, bounded found, starts [][]float64) (found, bool) {
+	if bounded.converged {
+		if f, ok := s.from(bounded.shares); ok && f.converged && f.pivot > leastSignedDistance {
+			return f, true
+		}
+	}
+	return best(s, starts, leastSignedDistance)
+}
+
 // best searches from every start and returns the least deviance that a search
 // converged to, or the least at all where none did. It reports false when every
 // search ran to the edge of the region where V is positive definite.
-func best(s *search, starts [][]float64) (found, bool) {
+func best(s *search, starts [][]float64, distance float64) (found, bool) {
 	var least found
 	have := false
 	for _, w := range starts {
 		f, ok := s.from(w)
-		if ok && f.pivot > leastDistance && (!have || better(f, least, s.lik.people)) {
+		if ok && f.pivot > distance && (!have || better(f, least, s.lik.people)) {
 			least, have = f, true
 		}
 	}

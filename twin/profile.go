@@ -293,13 +293,21 @@ func (p *profile) follow(near int, t float64) (found, bool) {
 				start = p.tangent
 			}
 			f, ok = p.search(reach).from(start(f.shares, reach))
-			ok = ok && f.converged && f.pivot > leastDistance && f.deviance >= p.least-p.rounding()
+			ok = ok && f.converged && f.pivot > p.distance() && f.deviance >= p.least-p.rounding()
 		}
 		if ok {
 			return f, true
 		}
 	}
 	return found{}, false
+}
+
+// distance is the smallest pivot at a point of the profile that counts.
+func (p *profile) distance() float64 {
+	if p.bounded {
+		return leastDistance
+	}
+	return leastSignedDistance
 }
 
 // scaled moves shares so that the inside ones sum to t, all of them and all of

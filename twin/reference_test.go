@@ -314,7 +314,7 @@ func TestGaltonFamilies(t *testing.T) {
 		return e
 	})
 	lik := newLikelihood(newMoments(l, s.columns.rows, s.columns.width), []int{placeA, placeC}, ML)
-	f, ok := best(newSearch(lik, []group{{upTo(3), 1}}, true), startingShares(2))
+	f, ok := best(newSearch(lik, []group{{upTo(3), 1}}, true), startingShares(2), leastDistance)
 	if !ok || !f.converged {
 		t.Fatal("no maximum")
 	}

@@ -36,6 +36,7 @@ func (p *Plan) addCorrelations(v *variable, rows []int, sample *twin.Sample, d *
 		case err != nil:
 			d.warnings = append(d.warnings, tidy.Warning{Analysis: "heritability", About: v.name, Message: fmt.Sprintf("no %s", plain(err))})
 		default:
+			row.Pairs, row.Families = c.Pairs, c.Families
 			row.Correlation, row.Low, row.High, row.Confidence = c.Value, c.Low, c.High, c.Confidence
 			row.IntervalKind = "profile"
 			if c.Bootstrap {

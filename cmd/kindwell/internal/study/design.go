@@ -94,14 +94,15 @@ func designOf(people *cohort.Cohort, c columns, rows []int) design {
 	}
 	for _, name := range c.squares {
 		for _, t := range termsOf(people, name, rows) {
-			about := centred(t.values)
-			add(fmt.Sprintf("(%s - mean)^2", t.name), product(about, about))
+			about := centred(t)
+			add(about.name+"^2", product(about.values, about.values))
 		}
 	}
 	for _, p := range c.products {
 		for _, a := range termsOf(people, p[0], rows) {
 			for _, b := range termsOf(people, p[1], rows) {
-				add(fmt.Sprintf("(%s - mean) x (%s - mean)", a.name, b.name), product(centred(a.values), centred(b.values)))
+				about, other := centred(a), centred(b)
+				add(about.name+" x "+other.name, product(about.values, other.values))
 			}
 		}
 	}
@@ -163,17 +164,19 @@ func pick[T any](values []T, rows []int) []T {
 	return out
 }
 
-func centred(values []float64) []float64 {
+// centred takes the mean of the rows away from a term and writes it into the
+// name, so that a fit can be used from its table alone.
+func centred(t term) term {
 	mean := 0.0
-	for _, v := range values {
+	for _, v := range t.values {
 		mean += v
 	}
-	mean /= float64(len(values))
-	out := make([]float64, len(values))
-	for i, v := range values {
-		out[i] = v - mean
+	mean /= float64(len(t.values))
+	about := term{fmt.Sprintf("(%s - %v)", t.name, mean), make([]float64, len(t.values))}
+	for i, v := range t.values {
+		about.values[i] = v - mean
 	}
-	return out
+	return about
 }
 
 func product(a, b []float64) []float64 {

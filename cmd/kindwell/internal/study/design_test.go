@@ -22,7 +22,7 @@ func people() *cohort.Cohort {
 func TestDesignByHand(t *testing.T) {
 	c := columns{use: []string{"age", "site"}, squares: []string{"age"}, products: [][2]string{{"age", "site"}}}
 	d := designOf(people(), c, []int{0, 1, 3}) // south, north, south; mean age 100/3
-	wantNames := []string{"age", "site: south", "(age - mean)^2", "(age - mean) x (site: south - mean)"}
+	wantNames := []string{"age", "site: south", "(age - 33.333333333333336)^2", "(age - 33.333333333333336) x (site: south - 0.6666666666666666)"}
 	if !slices.Equal(d.names, wantNames) {
 		t.Fatalf("names %v", d.names)
 	}
@@ -60,7 +60,7 @@ func TestSquaresOfConfoundsAreCovariates(t *testing.T) {
 	r := runStudy(t, writeStudy(t, dir, text), 2)
 	found := false
 	for _, e := range r.FixedEffects {
-		found = found || e.Term == "(age - mean)^2"
+		found = found || strings.HasPrefix(e.Term, "(age - ") && strings.HasSuffix(e.Term, ")^2")
 	}
 	if !found {
 		t.Errorf("no square of age among %d fixed effects", len(r.FixedEffects))

@@ -31,6 +31,8 @@ const (
 	flagDominance    = "suggests_dominance"
 	flagNotConverged = "not_converged"
 	flagNotFitted    = "not_fitted"
+	flagNoSigned     = "no_signed_maximum"
+	flagSignedCut    = "signed_interval_cut"
 )
 
 // divideVariances fits the variance models of every variable.
@@ -395,7 +397,14 @@ func (p *Plan) fillHeadline(sample *twin.Sample, fits map[string]*twin.Fit, d *d
 		case twin.A:
 			h.A2, h.A2Signed = e.Share, e.SignedShare
 			h.A2Low, h.A2High = p.interval(v, sample, f, twin.ShareA, d)
-			h.A2SignedLow, h.A2SignedHigh = p.interval(v, sample, f, twin.SignedA, d)
+			if f.SignedConverged {
+				h.A2SignedLow, h.A2SignedHigh = p.interval(v, sample, f, twin.SignedA, d)
+				if i, err := sample.Interval(f, twin.SignedA, p.Study.Confidence); err == nil && (i.LowAtBound || i.HighAtBound) {
+					flags = append(flags, flagSignedCut)
+				}
+			} else {
+				flags = append(flags, flagNoSigned)
+			}
 		case twin.C:
 			h.C2 = e.Share
 		case twin.D:

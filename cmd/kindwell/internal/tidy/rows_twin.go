@@ -95,7 +95,7 @@ type TwinCorrelation struct {
 	Variable    string  `name:"variable" key:"primary" description:"The phenotype the relatives are compared in: a measure, a trait or a confound."`
 	Role        string  `name:"role" key:"primary" enum:"measure trait confound" description:"What the variable is in the study: measure (a feature), trait (an outcome) or confound (a nuisance variable)."`
 	Relation    string  `name:"relation" key:"primary" enum:"mz dz_same_sex dz_opposite_sex unknown_zygosity full_sibling half_sibling parent_child spouse other_kin" description:"Kind of relation of the two people of a pair, for instance mz for identical twins and dz_same_sex for fraternal twins of the same sex."`
-	Pairs       int     `name:"pairs" unit:"pairs" description:"Number of pairs complete in the variable and the covariates."`
+	Pairs       int     `name:"pairs" unit:"pairs" description:"Number of pairs that the correlation rests on: complete in the variable and the covariates, and not left out beside a relation too rare for a correlation of its own. Without a correlation, the number of complete pairs."`
 	Families    int     `name:"families" unit:"families" description:"Number of families these pairs come from."`
 	Correlation float64 `name:"correlation" unit:"1" description:"How alike these relatives are, after the covariates: intraclass correlation by maximum likelihood with one mean and one variance for relations whose two sides are alike, interclass correlation for parent and child and for spouses."`
 	Interval
