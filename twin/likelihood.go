@@ -150,18 +150,42 @@ func (l *likelihood) accumulate(theta []float64) bool {
 			at := ij[0]*size + ij[1]
 			sum := sums[o*w : (o+1)*w]
 			addScaled(l.cross, v[at], sum)
-			next := 0
 			for k := range m {
 				addScaled(l.cross1[k], -l.d[k][at], sum)
-				for j := range k + 1 {
-					second := rowTimesColumn(l.pb[k], l.d[j], ij, size) + rowTimesColumn(l.pb[j], l.d[k], ij, size)
-					addScaled(l.cross2[next], second, sum)
-					next++
-				}
+			}
+		}
+		next := 0
+		for k := range m {
+			for j := range k + 1 {
+				l.addSecond(l.cross2[next], k, j, s, sums)
+				next++
 			}
 		}
 	}
 	return true
+}
+
+// manyOrbits is the size from which the products of a structure with many
+// orbits are made whole, by a fast product of matrices.
+const manyOrbits = 16
+
+// addSecond adds the second derivative of the cross-products by components k
+// and j, V^-1 B_k V^-1 B_j V^-1 and its mirror image, over the orbits of s.
+func (l *likelihood) addSecond(dst []float64, k, j int, s *structure, sums []float64) {
+	size, w := s.size, len(dst)
+	whole := size >= manyOrbits && len(s.pair) > size
+	if whole {
+		multiply(l.b[:size*size], l.pb[k], l.d[j], size)
+	}
+	for o, ij := range s.pair {
+		var second float64
+		if whole {
+			second = l.b[ij[0]*size+ij[1]] + l.b[ij[1]*size+ij[0]]
+		} else {
+			second = rowTimesColumn(l.pb[k], l.d[j], ij, size) + rowTimesColumn(l.pb[j], l.d[k], ij, size)
+		}
+		addScaled(dst, second, sums[o*w:(o+1)*w])
+	}
 }
 
 // profile turns the sums of accumulate into deviance, gradient and Hessian,
