@@ -223,6 +223,10 @@ var brokenInputs = []study{
 		want: "traits.csv:1: column \"age\": is a column of people.csv too; rename one of them, so that the name means one thing in the results"},
 	{name: "trait named like a measure", people: pair, measures: "person,dwell\nA,1\n", traits: "person,dwell\nA,1\n",
 		want: "traits.csv:1: column \"dwell\": is a column of measures.csv too; rename one of them, so that the name means one thing in the results"},
+	{name: "one table for measures and traits", people: pair, measures: "person,dwell\nA,1\n", in: func(in *Inputs) { in.Traits = []TableInput{{File: "measures.csv"}} },
+		want: "measures.csv:1: column \"dwell\": is a measure and a trait of the same table; write patterns of measures that leave the traits out"},
+	{name: "people as traits again", people: "person,age\nA,30\n", in: func(in *Inputs) { in.Traits = []TableInput{{File: "people.csv"}} },
+		want: "people.csv:1: column \"age\": is a column of people already; the people table need not be named as a table of measures or traits again"},
 	{name: "faults of three tables", people: "person,age\nA,30\nA,31\n", measures: "person,dwell\nA,x\n", traits: "person,mood,mood\nA,1,2\n",
 		want: "people.csv:3: column \"person\": \"A\": is already on row 2; delete one of the rows, or, if the table has a row a session, name that column (people: {session: NAME})\n" +
 			"measures.csv:2: column \"dwell\": \"x\": is not a number; correct it, or leave it empty (or name it in missing_codes) if it is missing\n" +

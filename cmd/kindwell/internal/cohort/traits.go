@@ -73,7 +73,16 @@ func (l *loader) refuseRepeatedNames(g *grid, faults *collector, counts func(nam
 		if !counts(name) {
 			continue
 		}
-		if before, taken := l.place[name]; taken {
+		before, taken := l.place[name]
+		if taken && before == g.file {
+			message := "is a measure and a trait of the same table; write patterns of measures that leave the traits out"
+			if g.file == l.in.People.File {
+				message = "is a column of people already; the people table need not be named as a table of measures or traits again"
+			}
+			faults.add(&Fault{File: g.file, Row: g.header, Column: name, Message: message})
+			continue
+		}
+		if taken {
 			faults.add(&Fault{File: g.file, Row: g.header, Column: name, Message: "is a column of " + before + " too; rename one of them, so that the name means one thing in the results"})
 			continue
 		}
