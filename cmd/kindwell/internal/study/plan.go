@@ -1,10 +1,13 @@
 package study
 
 import (
+	"crypto/sha256"
+	"encoding/hex"
 	"errors"
 	"fmt"
 	"io/fs"
 	"os"
+	"path/filepath"
 	"slices"
 
 	"kindwell/cmd/kindwell/internal/cohort"
@@ -24,6 +27,7 @@ type Plan struct {
 	predicting []measureSet // the sets of predict.sets
 	groups     []group
 	variables  []variable
+	studyFile  cohort.InputFile
 	foldTable  *cohort.FoldTable // nil without given folds
 	foldFiles  []cohort.InputFile
 	exclusions []tidy.Exclusion
@@ -66,7 +70,24 @@ func Open(path string) (*Plan, error) {
 	if err != nil {
 		return nil, err
 	}
-	return newPlan(s, c)
+	p, err := newPlan(s, c)
+	if err != nil {
+		return nil, err
+	}
+	if p.studyFile, err = digest(path); err != nil {
+		return nil, unread(path, err)
+	}
+	return p, nil
+}
+
+// digest records the study file among the inputs, by its base name.
+func digest(path string) (cohort.InputFile, error) {
+	data, err := os.ReadFile(path)
+	if err != nil {
+		return cohort.InputFile{}, err
+	}
+	sum := sha256.Sum256(data)
+	return cohort.InputFile{File: filepath.Base(path), SHA256: hex.EncodeToString(sum[:]), Bytes: int64(len(data))}, nil
 }
 
 // unread says why a study file could not be read at all; other errors are

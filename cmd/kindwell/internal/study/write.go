@@ -9,6 +9,7 @@ import (
 	"kindwell/cmd/kindwell/internal/cohort"
 	"kindwell/cmd/kindwell/internal/report"
 	"kindwell/cmd/kindwell/internal/tidy"
+	"kindwell/internal/dense"
 )
 
 // record is run.json: what decides the numbers of a run, and what it took.
@@ -23,6 +24,7 @@ type record struct {
 	Started  string          `json:"started"`
 	Seconds  float64         `json:"seconds"`
 	Workers  int             `json:"workers"`
+	Kernel   string          `json:"kernel"` // of matrix products
 	Counts   map[string]int  `json:"counts"`
 }
 
@@ -41,7 +43,7 @@ func (p *Plan) newRecord(opt Options, started time.Time, r *Results) record {
 	rec := record{
 		Kindwell: opt.Version, Go: runtime.Version(), Machine: runtime.GOOS + "/" + runtime.GOARCH,
 		Study: p.Study.Title, Seed: p.Study.Seed, Parts: parts,
-		Started: started.UTC().Format(time.RFC3339), Seconds: time.Since(started).Seconds(), Workers: opt.Workers,
+		Started: started.UTC().Format(time.RFC3339), Seconds: time.Since(started).Seconds(), Workers: opt.Workers, Kernel: dense.Kernel(),
 		Counts: map[string]int{
 			"people": len(p.Cohort.People), "families": p.Cohort.Pedigree.Families(), "measures": len(p.measures),
 			"people_groups": len(r.PeopleGroups), "prediction_scores": len(r.PredictionScores),
@@ -54,9 +56,10 @@ func (p *Plan) newRecord(opt Options, started time.Time, r *Results) record {
 	return rec
 }
 
-// inputFiles are the tables that were read, the study file's folds included.
+// inputFiles are the study file and all tables that were read.
 func (p *Plan) inputFiles() []cohort.InputFile {
-	return append(append([]cohort.InputFile(nil), p.Cohort.InputFiles...), p.foldFiles...)
+	files := append([]cohort.InputFile{p.studyFile}, p.Cohort.InputFiles...)
+	return append(files, p.foldFiles...)
 }
 
 // Reserve begins the results folder, so that a folder that cannot be written

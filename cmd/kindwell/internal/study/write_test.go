@@ -84,7 +84,7 @@ func TestFolderIsAsItsPackageSays(t *testing.T) {
 	if err := json.Unmarshal(text, &rec); err != nil {
 		t.Fatal(err)
 	}
-	if rec.Seed != 5 || len(rec.Inputs) != 3 || rec.Counts["people"] == 0 || rec.Kindwell != "test" {
+	if rec.Seed != 5 || len(rec.Inputs) != 4 || rec.Inputs[0].File != "study.yaml" || rec.Counts["people"] == 0 || rec.Kindwell != "test" {
 		t.Errorf("record: %+v", rec)
 	}
 }
