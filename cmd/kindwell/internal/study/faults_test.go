@@ -2,6 +2,7 @@ package study
 
 import (
 	"context"
+	"fmt"
 	"os"
 	"path/filepath"
 	"strings"
@@ -108,5 +109,37 @@ func TestTooManyFolds(t *testing.T) {
 	}
 	if _, again := p.Check(); again == nil || again.Error() != err.Error() {
 		t.Errorf("check says %v", again)
+	}
+}
+
+// TestInbreedingRefusesDominance by row, where ADE is named; without a list of
+// models it is left out with a warning.
+func TestInbreedingRefusesDominance(t *testing.T) {
+	dir := cohortFiles(t, 24)
+	path := filepath.Join(dir, "people.csv")
+	data, err := os.ReadFile(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	// Two full siblings of another family have a child.
+	text := string(data) + "zm,900,gm,gf,,,50,female,north\nzf,900,gm,gf,,,52,male,north\nzc,900,zm,zf,,,20,female,north\n"
+	if err := os.WriteFile(path, []byte(text), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	row := strings.Count(text, "\n")
+	asked := strings.Replace(wholeStudy, "  full: ACE\n", "  full: ACE\n  models: [ACE, ADE, CE]\n", 1)
+	_, err = Open(writeStudy(t, dir, asked))
+	want := fmt.Sprintf(`people.csv:%d: column "person": "zc": has parents who are related`, row)
+	if err == nil || !strings.Contains(err.Error(), want) {
+		t.Errorf("got %v, want %s", err, want)
+	}
+	p, err := Open(writeStudy(t, dir, wholeStudy))
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, m := range p.Study.Heritability.Models {
+		if m == "ADE" {
+			t.Error("ADE is still there")
+		}
 	}
 }

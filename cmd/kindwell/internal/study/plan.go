@@ -121,6 +121,7 @@ func newPlan(s *config.Study, c *cohort.Cohort) (*Plan, error) {
 	p.checkColumns(&f)
 	p.scaleMeasures(&f)
 	p.resolveSets(&f)
+	p.checkInbreeding(&f)
 	if err := f.err(); err != nil {
 		return nil, err
 	}
@@ -247,6 +248,26 @@ func (p *Plan) checkColumns(f *faults) {
 			known(name, fmt.Sprintf("heritability.covariates[%d]", i))
 		}
 	}
+}
+
+// checkInbreeding refuses models with dominance where somebody's parents are
+// related. Where no model was named, they are left out of the default list.
+func (p *Plan) checkInbreeding(f *faults) {
+	h := p.Study.Heritability
+	person, found := p.Cohort.Pedigree.Inbred()
+	if h == nil || !found || !slices.Contains(h.Models, config.ADE) {
+		return
+	}
+	fault := &cohort.Fault{
+		File: p.Study.People.File, Row: p.Cohort.Lines[person], Column: "person", Value: p.Cohort.People[person],
+		Message: "has parents who are related, and dominance (model ADE) is not defined then; leave ADE out of heritability.models",
+	}
+	if p.Study.Given("heritability.models") || h.Full == config.ADE {
+		f.cells = append(f.cells, fault)
+		return
+	}
+	h.Models = slices.DeleteFunc(slices.Clone(h.Models), func(m config.Model) bool { return m == config.ADE })
+	p.warn("heritability", "models", fmt.Sprintf("%s, row %d: a person has parents who are related; model ADE is not defined then and left out", fault.File, fault.Row))
 }
 
 // choosePredicting finds the sets that predict.
