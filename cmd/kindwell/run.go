@@ -74,6 +74,9 @@ func runStudy(ctx context.Context, path string, flags runFlags, stdout, stderr i
 	if err != nil {
 		return err
 	}
+	if part := plan.Lacks(flags.only); part != "" {
+		return usageError{fmt.Errorf("--only names %s, and %s has no section %s", part, path, part)}
+	}
 	folder, err := plan.Reserve(flags.overwrite)
 	if errors.Is(err, tidy.ErrNotEmpty) {
 		return fmt.Errorf("%w (--overwrite)", err)

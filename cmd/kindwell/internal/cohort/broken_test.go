@@ -223,6 +223,10 @@ var brokenInputs = []study{
 		want: "traits.csv:1: column \"age\": is a column of people.csv too; rename one of them, so that the name means one thing in the results"},
 	{name: "trait named like a measure", people: pair, measures: "person,dwell\nA,1\n", traits: "person,dwell\nA,1\n",
 		want: "traits.csv:1: column \"dwell\": is a column of measures.csv too; rename one of them, so that the name means one thing in the results"},
+	{name: "unknown parents coded 0", people: "person,family,mother,father\nA,1,0,0\nB,2,0,0\nC,3,0,0\n",
+		want: "people.csv:1: column \"mother\": \"0\": is the mother of 3 people under 3 family labels, which makes them one family; if it means unknown, leave these cells empty (or name it under missing_codes, if it is a value in no other column)\n" +
+			"people.csv:1: column \"father\": \"0\": is the father of 3 people under 3 family labels, which makes them one family; if it means unknown, leave these cells empty (or name it under missing_codes, if it is a value in no other column)\n" +
+			"people.csv:2: column \"father\": \"0\": \"0\" is the father of \"A\" and the mother of \"A\"; nobody is both"},
 	{name: "one table for measures and traits", people: pair, measures: "person,dwell\nA,1\n", in: func(in *Inputs) { in.Traits = []TableInput{{File: "measures.csv"}} },
 		want: "measures.csv:1: column \"dwell\": is a measure and a trait of the same table; write patterns of measures that leave the traits out"},
 	{name: "people as traits again", people: "person,age\nA,30\n", in: func(in *Inputs) { in.Traits = []TableInput{{File: "people.csv"}} },

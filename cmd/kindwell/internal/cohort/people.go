@@ -74,6 +74,9 @@ func (l *loader) loadPeople() {
 	pedigree, notes, err := twin.NewPedigree(persons, in.Rules)
 	if err != nil {
 		p.pedigreeFaults(err, &faults)
+		for _, shared := range c.SharedParents() {
+			faults.add(&Fault{File: p.file, Row: p.header, Column: p.column[shared.Role], Value: shared.ID, Message: shared.String()})
+		}
 		return
 	}
 	c.Pedigree = pedigree
@@ -343,7 +346,7 @@ func (p *peopleTable) pedigreeFaults(err error, faults *collector) {
 		}
 		row := p.rows.of(person.Person)[0]
 		message := person.Message
-		if person.Other >= 0 {
+		if person.Other >= 0 && person.Other != person.Person {
 			message += fmt.Sprintf(" (row %d)", p.Line(p.rows.of(person.Other)[0]))
 		}
 		column := p.column[person.Field]

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"strings"
 
 	"gonum.org/v1/gonum/mat"
 	"gonum.org/v1/gonum/stat/distuv"
@@ -79,8 +80,14 @@ func (p *Plan) checkGroup(i int) (report.CheckedGroup, []tidy.Warning, error) {
 		checked.Structures = append(checked.Structures, report.Structure{Size: s.Size, Families: s.Families, Symmetries: shortInt(s.Symmetries)})
 	}
 	confounds := designOf(p.Cohort, confoundColumns(p.Study.Confounds), g.rows)
+	traits := p.traitMatrix(g)
+	residuals, err := predict.Residuals(traits, confounds.matrix)
+	if err != nil {
+		return checked, nil, fmt.Errorf("%s: %s", strings.Join(g.traits, ", "), plain(err))
+	}
+	notes = append(notes, emptyTraits(g, traits, residuals)...)
 	if confounds.matrix != nil {
-		shares, err := predict.ExplainedShare(p.traitMatrix(g), confounds.matrix)
+		shares, err := predict.ExplainedShare(traits, confounds.matrix)
 		if err != nil {
 			return checked, nil, fmt.Errorf("confounds: %s", plain(err))
 		}
@@ -207,7 +214,11 @@ func (p *Plan) work() []string {
 		for _, g := range p.groups {
 			traits += len(g.traits)
 		}
-		lines = append(lines, fmt.Sprintf("predictions of traits (%d) from sets of measures (%d), each again for up to %d arrangements of the trait", traits, len(p.predicting), s.Permutations))
+		arrangements := "without a test"
+		if s.Permutations > 0 {
+			arrangements = fmt.Sprintf("each again for up to %d arrangements of the trait", s.Permutations)
+		}
+		lines = append(lines, fmt.Sprintf("predictions of traits (%d) from sets of measures (%d), %s", traits, len(p.predicting), arrangements))
 	}
 	if s := p.Study.Heritability; s != nil {
 		lines = append(lines, fmt.Sprintf("variance models (%d) of variables (%d)", len(s.Models), len(p.variables)))

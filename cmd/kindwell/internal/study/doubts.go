@@ -21,7 +21,11 @@ func (p *Plan) doubt() {
 	}
 	for _, name := range p.Cohort.Names {
 		if v := p.Cohort.Variables[name]; v.Numeric {
-			p.doubtCodes("people", name, v.Values)
+			analysis := "traits"
+			if v.File == p.Study.People.File {
+				analysis = "people"
+			}
+			p.doubtCodes(analysis, name, v.Values)
 		}
 	}
 	if t := p.Cohort.Measures; t != nil {
@@ -95,27 +99,8 @@ func (p *Plan) doubtCategories() {
 // doubtParents warns of a parent without a row whom families of several labels
 // share: an unknown parent coded as 0 ties them all together.
 func (p *Plan) doubtParents() {
-	type parent struct{ column, id string }
-	labels := map[parent]map[string]bool{}
-	children := map[parent]int{}
-	var order []parent
-	for _, r := range p.Cohort.Records {
-		for _, who := range []parent{{"mother", r.Mother}, {"father", r.Father}} {
-			if _, hasRow := p.Cohort.Index(who.id); who.id == "" || hasRow {
-				continue
-			}
-			if labels[who] == nil {
-				labels[who] = map[string]bool{}
-				order = append(order, who)
-			}
-			labels[who][r.Family] = true
-			children[who]++
-		}
-	}
-	for _, who := range order {
-		if n := len(labels[who]); n >= 3 {
-			p.warn("people", who.column, fmt.Sprintf("%q is the %s of %d people under %d family labels, who are one family therefore; if it means unknown, name it under missing_codes", who.id, who.column, children[who], n))
-		}
+	for _, shared := range p.Cohort.SharedParents() {
+		p.warn("people", shared.Role, fmt.Sprintf("%q %s", shared.ID, shared))
 	}
 }
 
@@ -170,6 +155,9 @@ func (p *Plan) mostMissing(traits []string) string {
 				count(p.measures[j].name, func(row int) bool { return math.IsNaN(p.measures[j].values[row]) })
 			}
 		}
+	}
+	if shared := p.Cohort.SharedParents(); len(shared) > 0 {
+		return fmt.Sprintf("%q %s", shared[0].ID, shared[0])
 	}
 	if len(lacks) == 0 {
 		return "nothing is missing; there are too few families"

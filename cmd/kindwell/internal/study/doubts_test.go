@@ -53,7 +53,7 @@ func TestDoubts(t *testing.T) {
 		{"states of the same people", strings.Replace(wholeStudy, "other_people", "same_people", 1), "", nil,
 			"measures, states_learned_on: the states were learned on people of this study"},
 		{"a code in a trait", wholeStudy, "mood.csv", func(l []string) { l[4], l[9] = setCell(l[4], 1, "-999"), setCell(l[9], 1, "-999") },
-			"people, mood: -999 stands in 2 of its cells, far from all others; if it means missing, name it under missing_codes"},
+			"traits, mood: -999 stands in 2 of its cells, far from all others; if it means missing, name it under missing_codes"},
 		{"a code in a measure", strings.Replace(wholeStudy, "as: log", "as: none", 1), "dynamics.csv", func(l []string) { l[4] = setCell(l[4], 4, "-9") },
 			"measures, dwell_s: -9 stands in 1 of its cells"},
 		{"an unknown mother coded 0", wholeStudy, "people.csv", func(l []string) {

@@ -67,6 +67,10 @@ func (p *Plan) foldsOf(i int) (*crossval.Folds, error) {
 		folds, err = crossval.BalancedFolds(family, opt)
 	}
 	if err != nil {
+		var count *crossval.CountError
+		if errors.As(err, &count) && (count.Fold >= 0 || count.Outer <= count.Families) {
+			path = "predict.inner"
+		}
 		var f faults
 		f.study(p.Study, path, p.foldTrouble(err, g, names), "")
 		return nil, f.err()

@@ -99,6 +99,9 @@ func (g *guessed) chooseMeasures(tables []seen) {
 		return
 	}
 	m := g.measures
+	if other := slices.DeleteFunc(m.numbers(), looksLikeMeasure); len(other) > 0 && len(other) < len(m.numbers()) {
+		g.note("%s: not named like measures, and yet among them: %s; name those that are traits under traits.use, and leave them out of the sets", m.file, strings.Join(shorten(other, 8), ", "))
+	}
 	g.note("%s holds the measures: %d columns%s", m.file, len(m.numbers()), sessionsOf(m))
 	g.wholes = wholes(m.table, m.numbers())
 	for _, w := range g.wholes {

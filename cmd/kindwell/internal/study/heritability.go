@@ -28,6 +28,7 @@ type divided struct {
 const (
 	flagSameInTwins  = "same_in_twins"
 	flagTwoValues    = "two_values"
+	flagConstant     = "constant"
 	flagDominance    = "suggests_dominance"
 	flagNotConverged = "not_converged"
 	flagNotFitted    = "not_fitted"
@@ -125,6 +126,9 @@ func (p *Plan) divide(v *variable) (divided, error) {
 		d.headline.Flags = flag
 		d.exclusions = append(d.exclusions, tidy.Exclusion{Analysis: "heritability", Variable: v.name, Reason: reason})
 		return d, nil
+	}
+	if distinct(pick(v.values, rows)) == 1 {
+		return refuse(flagConstant, "not fitted: the variable is constant")
 	}
 	if zygosity := sameInTwins(v.values, counts); zygosity != "" {
 		return refuse(flagSameInTwins, fmt.Sprintf("not fitted: equal in both twins of 95 %% or more of the %s pairs, so that the likelihood has no maximum", zygosity))

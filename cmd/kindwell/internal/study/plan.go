@@ -262,6 +262,12 @@ func (p *Plan) checkInbreeding(f *faults) {
 		File: p.Study.People.File, Row: p.Cohort.Lines[person], Column: "person", Value: p.Cohort.People[person],
 		Message: "has parents who are related, and dominance (model ADE) is not defined then; leave ADE out of heritability.models",
 	}
+	if h.Full == config.ADE {
+		fault.Message = "has parents who are related, and dominance (full: ADE) is not defined then; choose full: ACE or AE"
+	}
+	if shared := p.Cohort.SharedParents(); len(shared) > 0 {
+		fault.Message += fmt.Sprintf("; but first look at %s %q, who %s", shared[0].Role, shared[0].ID, shared[0])
+	}
 	if p.Study.Given("heritability.models") || h.Full == config.ADE {
 		f.cells = append(f.cells, fault)
 		return

@@ -32,6 +32,17 @@ const (
 // Parts names the parts of a run, as --only takes them.
 func Parts() []string { return []string{partPredict, partHeritability} }
 
+// Lacks names the first of the asked parts that the study has no section for,
+// or nothing.
+func (p *Plan) Lacks(parts []string) string {
+	for _, part := range parts {
+		if part == partPredict && p.Study.Predict == nil || part == partHeritability && p.Study.Heritability == nil {
+			return part
+		}
+	}
+	return ""
+}
+
 // Results are the rows of every table of a run.
 type Results struct {
 	plan   *Plan

@@ -273,6 +273,21 @@ func TestOnly(t *testing.T) {
 	}
 }
 
+// TestLacks names a part that the study file does not ask for.
+func TestLacks(t *testing.T) {
+	dir := cohortFiles(t, 24)
+	p, err := Open(writeStudy(t, dir, wholeStudy[:strings.Index(wholeStudy, "heritability:")]))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got := p.Lacks([]string{partPredict, partHeritability}); got != partHeritability {
+		t.Errorf("lacks %q", got)
+	}
+	if got := p.Lacks(nil); got != "" {
+		t.Errorf("lacks %q", got)
+	}
+}
+
 // TestStopped: an ended context ends a run with its error and no results.
 func TestStopped(t *testing.T) {
 	dir := cohortFiles(t, 24)
