@@ -50,20 +50,28 @@ var missingLike = []float64{-9, -99, -999, -9999, -1, 99, 999, 9999, -77, -88, 7
 // number has to lie before it is taken for a code.
 const farAway = 10
 
+// fewValues is the number of other values below which nothing is far away.
+const fewValues = 8
+
 // doubtCodes warns of numbers that look like codes for missing values.
 func (p *Plan) doubtCodes(analysis, name string, values []float64) {
 	for _, code := range missingLike {
 		count := 0
+		for _, v := range values {
+			if v == code {
+				count++
+			}
+		}
+		if count == 0 {
+			continue
+		}
 		var others []float64
 		for _, v := range values {
-			switch {
-			case v == code:
-				count++
-			case v == v:
+			if v != code && v == v {
 				others = append(others, v)
 			}
 		}
-		if count == 0 || len(others) < 8 {
+		if len(others) < fewValues {
 			continue
 		}
 		sort.Float64s(others)
