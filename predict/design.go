@@ -5,12 +5,11 @@ import (
 	"errors"
 	"fmt"
 	"slices"
-	"sync"
-	"sync/atomic"
 
 	"gonum.org/v1/gonum/mat"
 
 	"kindwell/crossval"
+	"kindwell/internal/parallel"
 )
 
 // keepBytes bounds the decompositions that a Design keeps, and about those that
@@ -288,40 +287,10 @@ func (d *Design) build(ctx context.Context, s stage, decompose bool) ([]*fold, e
 	l := d.layouts[s.repeat]
 	ordered := d.source.inOrder(l)
 	folds := make([]*fold, s.to-s.from)
-	err := d.inParallel(ctx, len(folds), func(i, _ int) error {
+	err := parallel.Do(ctx, d.opt.Workers, len(folds), func(i, _ int) error {
 		f, err := d.newFold(ordered, l, s.from+i, decompose)
 		folds[i] = f
 		return err
 	})
 	return folds, err
-}
-
-// inParallel calls do(i, worker) for i = 0..count-1 from Options.Workers
-// goroutines and returns the error of the smallest i that has one, or that of
-// ctx.
-func (d *Design) inParallel(ctx context.Context, count int, do func(i, worker int) error) error {
-	errs := make([]error, count)
-	var next atomic.Int64
-	var failed atomic.Bool
-	var group sync.WaitGroup
-	for w := range min(d.opt.Workers, count) {
-		group.Go(func() {
-			for !failed.Load() && ctx.Err() == nil {
-				i := int(next.Add(1)) - 1
-				if i >= count {
-					return
-				}
-				if errs[i] = do(i, w); errs[i] != nil {
-					failed.Store(true)
-				}
-			}
-		})
-	}
-	group.Wait()
-	for _, err := range errs {
-		if err != nil {
-			return err
-		}
-	}
-	return ctx.Err()
 }

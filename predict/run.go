@@ -5,6 +5,8 @@ import (
 	"sync"
 
 	"gonum.org/v1/gonum/blas/blas64"
+
+	"kindwell/internal/parallel"
 )
 
 const (
@@ -55,7 +57,7 @@ func (d *Design) run(ctx context.Context, cols columns, search bool, v visitor, 
 		width := d.blockWidth(l, decomposed)
 		blocks := (cols.count() + width - 1) / width
 		workspaces := make([]*block, min(d.opt.Workers, blocks))
-		err = d.inParallel(ctx, blocks, func(i, worker int) error {
+		err = parallel.Do(ctx, d.opt.Workers, blocks, func(i, worker int) error {
 			b := workspaces[worker]
 			if b == nil {
 				b = d.newBlock(l, ordered, decomposed, min(width, cols.count()), search)

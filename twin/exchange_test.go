@@ -33,9 +33,21 @@ func drawCohort(t *rapid.T) *Pedigree {
 	}
 	p, _, err := NewPedigree(all, drawRules(t))
 	if err != nil {
-		t.Skip("the draw is contradictory:", err)
+		t.Fatal(err)
 	}
 	return p
+}
+
+// asExchanged is the part of a relation that exchange has to keep beside kinship,
+// home and parents: what kind of twins they are, whatever their sex.
+func asExchanged(r Relation) Relation {
+	switch r {
+	case MZ, UnknownZygosity:
+		return r
+	case DZSameSex, DZOppositeSex:
+		return DZSameSex
+	}
+	return Unrelated
 }
 
 // Every arrangement of any pedigree's people gives each pair of places a pair of
@@ -59,7 +71,7 @@ func TestArrangementsKeepEveryPairOfAPedigree(t *testing.T) {
 				}
 				for j := range i {
 					a, b, c, d := rows[i], rows[j], rows[to[i]], rows[to[j]]
-					if p.Relation(a, b).Twins() != p.Relation(c, d).Twins() || p.Kinship(a, b) != p.Kinship(c, d) ||
+					if asExchanged(p.Relation(a, b)) != asExchanged(p.Relation(c, d)) || p.Kinship(a, b) != p.Kinship(c, d) ||
 						p.SharedHome(a, b) != p.SharedHome(c, d) || (p.Mother(a) == b || p.Father(a) == b) != (p.Mother(c) == d || p.Father(c) == d) {
 						t.Fatalf("places of %d and %d hold %d and %d: relation %s became %s", a, b, c, d, p.Relation(a, b), p.Relation(c, d))
 					}

@@ -9,6 +9,7 @@ import (
 
 	"kindwell/cmd/kindwell/internal/tidy"
 	"kindwell/crossval"
+	"kindwell/internal/parallel"
 	"kindwell/twin"
 )
 
@@ -41,7 +42,7 @@ func (p *Plan) divideVariances(ctx context.Context, r *Results, opt Options) err
 	stage := opt.Progress.Stage("heritability", len(p.variables))
 	defer stage.Done()
 	parts := make([]divided, len(p.variables))
-	err := inParallel(ctx, opt.Workers, len(p.variables), func(i int) error {
+	err := parallel.Do(ctx, opt.Workers, len(p.variables), func(i, _ int) error {
 		var err error
 		parts[i], err = p.divide(&p.variables[i])
 		stage.Step(1)
@@ -145,7 +146,8 @@ func (p *Plan) divide(v *variable) (divided, error) {
 	fits := p.fitModels(v, sample, &d)
 	p.addCorrelations(v, complete, sample, &d)
 	p.addTests(v, sample, fits, &d)
-	return d, p.fillHeadline(sample, fits, &d)
+	p.fillHeadline(v, sample, fits, &d)
+	return d, nil
 }
 
 // sameInTwins names a zygosity whose twins cannot differ in the variable.
@@ -330,7 +332,8 @@ func (p *Plan) addFit(v *variable, sample *twin.Sample, f *twin.Fit, lowest bool
 			Variance: e.Variance, Share: e.Share, AtBound: e.AtBound,
 			SignedVariance: e.SignedVariance, SignedShare: e.SignedShare,
 		}
-		row.Low, row.High = p.interval(v, sample, f, quantities[e.Component], d)
+		limits := p.interval(v, sample, f, quantities[e.Component], d)
+		row.Low, row.High = limits.Low, limits.High
 		d.components = append(d.components, row)
 	}
 	for _, e := range f.Fixed {
@@ -342,18 +345,15 @@ func (p *Plan) addFit(v *variable, sample *twin.Sample, f *twin.Fit, lowest bool
 	}
 }
 
-// interval returns the profile limits of a quantity, empty with a warning
-// when they are not found. A model of E alone has nothing to profile.
-func (p *Plan) interval(v *variable, sample *twin.Sample, f *twin.Fit, q twin.Quantity, d *divided) (low, high float64) {
-	if f.Model == twin.ModelE {
-		return 1, 1
-	}
+// interval returns the profile interval of a quantity, its limits empty with a
+// warning when they are not found. A model of E alone has nothing to profile.
+func (p *Plan) interval(v *variable, sample *twin.Sample, f *twin.Fit, q twin.Quantity, d *divided) twin.Interval {
 	i, err := sample.Interval(f, q, p.Study.Confidence)
 	if err != nil {
-		d.warnings = append(d.warnings, tidy.Warning{Analysis: "heritability", About: v.name, Message: fmt.Sprintf("no %s", plain(err))})
-		return math.NaN(), math.NaN()
+		d.warnings = append(d.warnings, tidy.Warning{Analysis: "heritability", About: v.name, Message: "no " + plain(err)})
+		return twin.Interval{Low: math.NaN(), High: math.NaN()}
 	}
-	return i.Low, i.High
+	return i
 }
 
 // addTests makes the rows of every test between two fitted models.
@@ -381,17 +381,17 @@ func (p *Plan) addTests(v *variable, sample *twin.Sample, fits map[string]*twin.
 }
 
 // fillHeadline fills the row of heritability.csv from the full model.
-func (p *Plan) fillHeadline(sample *twin.Sample, fits map[string]*twin.Fit, d *divided) error {
+// Its share of A and its test are those of the other tables.
+func (p *Plan) fillHeadline(v *variable, sample *twin.Sample, fits map[string]*twin.Fit, d *divided) {
 	h := &d.headline
-	v := &variable{name: h.Variable, role: h.Role}
 	f := fits[h.Model]
 	if f == nil {
 		h.Flags = flagNotFitted
-		return nil
+		return
 	}
 	if !f.Converged {
 		h.Flags = flagNotConverged
-		return nil
+		return
 	}
 	var flags []string
 	h.E2 = f.Share(twin.E)
@@ -400,10 +400,15 @@ func (p *Plan) fillHeadline(sample *twin.Sample, fits map[string]*twin.Fit, d *d
 		switch e.Component {
 		case twin.A:
 			h.A2, h.A2Signed = e.Share, e.SignedShare
-			h.A2Low, h.A2High = p.interval(v, sample, f, twin.ShareA, d)
+			for _, c := range d.components {
+				if c.Model == h.Model && c.Component == e.Component.String() {
+					h.A2Low, h.A2High = c.Low, c.High
+				}
+			}
 			if f.SignedConverged {
-				h.A2SignedLow, h.A2SignedHigh = p.interval(v, sample, f, twin.SignedA, d)
-				if i, err := sample.Interval(f, twin.SignedA, p.Study.Confidence); err == nil && (i.LowAtBound || i.HighAtBound) {
+				i := p.interval(v, sample, f, twin.SignedA, d)
+				h.A2SignedLow, h.A2SignedHigh = i.Low, i.High
+				if i.LowAtBound || i.HighAtBound {
 					flags = append(flags, flagSignedCut)
 				}
 			} else {
@@ -421,10 +426,11 @@ func (p *Plan) fillHeadline(sample *twin.Sample, fits map[string]*twin.Fit, d *d
 			h.H2Broad += e.Share
 		}
 	}
-	h.FamilialLow, h.FamilialHigh = p.interval(v, sample, f, twin.Familial, d)
+	familial := p.interval(v, sample, f, twin.Familial, d)
+	h.FamilialLow, h.FamilialHigh = familial.Low, familial.High
 	if null, against, ok := twin.HeadlineTest(f.Model); ok {
-		if n, a := fits[null.String()], fits[against.String()]; n != nil && a != nil {
-			if t, err := sample.Test(n, a); err == nil {
+		for _, t := range d.tests {
+			if t.NullModel == null.String() && t.FullModel == against.String() {
 				h.P, h.Tail = t.P, crossval.Upper.String()
 			}
 		}
@@ -437,7 +443,6 @@ func (p *Plan) fillHeadline(sample *twin.Sample, fits map[string]*twin.Fit, d *d
 		}
 	}
 	h.Flags = strings.Join(flags, ";")
-	return nil
 }
 
 // distinct counts the different values, up to three.
